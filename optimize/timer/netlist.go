@@ -1,0 +1,3 @@
+package timer
+
+type netlist struct{}
