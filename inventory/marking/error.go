@@ -1,0 +1,67 @@
+package marking
+
+import (
+	"fmt"
+	"strings"
+	"unicode/utf8"
+)
+
+// Error is why a text could not be read as a quantity: where in it, and what to
+// write instead.
+type Error struct {
+	Text    string // the whole text as given
+	Column  int    // byte column of the first offending character, from 1; len(Text)+1 at its end
+	Message string // what is wrong there and what to do
+}
+
+// longestQuote is the most characters of a text that a message repeats.
+const longestQuote = 40
+
+func (e *Error) Error() string { return fmt.Sprintf("%s: %s", quoted(e.Text), e.Message) }
+
+// Within returns the error as one about a longer text in which e.Text begins
+// offset bytes in.
+func (e *Error) Within(text string, offset int) *Error {
+	return &Error{Text: text, Column: e.Column + offset, Message: e.Message}
+}
+
+// errorAt returns an Error about the byte at offset at (from 0) of text.
+func errorAt(text string, at int, format string, args ...any) *Error {
+	return &Error{Text: text, Column: at + 1, Message: fmt.Sprintf(format, args...)}
+}
+
+// quoted returns the text between quotes, shortened, with what does not print
+// escaped.
+func quoted(text string) string {
+	if utf8.RuneCountInString(text) <= longestQuote {
+		return fmt.Sprintf("%q", text)
+	}
+	end := 0
+	for range longestQuote {
+		_, size := utf8.DecodeRuneInString(text[end:])
+		end += size
+	}
+	return fmt.Sprintf("%q", text[:end]+"…")
+}
+
+// characterAt returns the character at the offset for a message: quoted, or
+// named where it is a byte outside UTF-8 or the end of the text.
+func characterAt(text string, at int) string {
+	if at >= len(text) {
+		return "the end"
+	}
+	r, size := utf8.DecodeRuneInString(text[at:])
+	if r == utf8.RuneError && size == 1 {
+		return fmt.Sprintf("byte 0x%02X, which is not UTF-8 text,", text[at])
+	}
+	return fmt.Sprintf("%q", string(r))
+}
+
+// alternatives returns the words as "a, b or c".
+func alternatives(words ...string) string {
+	if len(words) < 2 {
+		return strings.Join(words, "")
+	}
+	last := len(words) - 1
+	return strings.Join(words[:last], ", ") + " or " + words[last]
+}
