@@ -7,16 +7,21 @@ const MaxResistors = 3
 
 // Values fills the positions of a circuit: Ohms in the order of
 // Circuit.Resistors, one capacitance, and the diode model where the circuit has
-// diodes.
+// diodes (all its diodes are alike).
 type Values struct {
 	Ohms   [MaxResistors]float64
 	Farads float64
 	Diode  Diode
 }
 
-// Trend is the sign of a phase time's slope in each resistor: +1 longer with
-// more resistance, -1 shorter, 0 independent. Every phase is longer with more
-// capacitance.
+// Trend is the sign of a phase time's slope in each resistor: +1 never shorter
+// with more resistance, -1 never longer, 0 independent. Every phase is
+// proportional to the capacitance.
+//
+// The signs follow from the one law t = C ∫ dv/i(v): at every capacitor voltage
+// the current of a passive network falls as a resistor in its path rises, and
+// rises as the resistor that works against it rises. They say nothing of sums:
+// where one phase grows and the other shrinks, the period has a minimum.
 type Trend [MaxResistors]int8
 
 // Phases is the duration of each phase, s; +Inf for one that never ends. A
@@ -33,17 +38,18 @@ type Circuit struct {
 	Inverter  bool     // an inverter follows the output
 	OneShot   bool     // one pulse, no oscillation
 
-	// HighTrend and LowTrend hold where every phase ends.
+	// HighTrend and LowTrend hold where every phase ends and no rail is broken.
 	HighTrend, LowTrend Trend
 
 	// Phases returns the durations under the conditions; it allocates nothing.
 	Phases func(*Conditions, *Values) Phases
-	// FirstHighS returns the first high time from an empty capacitor, s.
+	// FirstHighS returns the first high time from an empty capacitor, s; 0 for
+	// a one-shot, +Inf where it never ends.
 	FirstHighS func(*Conditions, *Values) float64
 	// Stalls returns, for values whose phases do not all end, which voltage
-	// cannot be reached and why, for people.
+	// cannot be reached and why, for people; "" where they all end.
 	Stalls func(*Conditions, *Values) string
-	// wire returns the lines of the circuit's SPICE netlist (netlist.go).
+	// wire writes the circuit's elements around the timer (netlist.go).
 	wire func(*netlist)
 }
 
@@ -51,9 +57,27 @@ type Circuit struct {
 // from v0 to v1, s; +Inf where it cannot. t = R C ln((Vth-v0)/(Vth-v1)), the
 // linear case of t = C ∫ dv/i(v).
 func rampS(vth, rth, farads, v0, v1 float64) float64 {
-	remaining := vth - v1
-	if remaining == 0 || (remaining > 0) != (v1 > v0) {
+	if !reaches(vth, v0, v1) {
 		return math.Inf(1)
 	}
-	return rth * farads * math.Log1p((v1-v0)/remaining)
+	return rth * farads * math.Log1p((v1-v0)/(vth-v1))
+}
+
+// reaches reports whether a source of vinf moves a capacitor from v0 past v1.
+func reaches(vinf, v0, v1 float64) bool {
+	if v1 > v0 {
+		return vinf > v1
+	}
+	return vinf < v1
+}
+
+// pulledDown returns the Thevenin voltage and resistance at the capacitor while
+// the switch discharges it through rb and rd against ra, which pulls up still.
+// Without any resistance the supply wins.
+func pulledDown(c *Conditions, ra, rb, rd float64) (vth, rth float64) {
+	rx := rd + c.SwitchOhm
+	if ra == 0 {
+		return c.SupplyV, rb
+	}
+	return (c.SupplyV*rx + c.SwitchV*ra) / (ra + rx), rb + ra*rx/(ra+rx)
 }

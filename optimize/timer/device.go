@@ -1,12 +1,5 @@
 package timer
 
-// Diode is a diode's exponential law with its series resistance:
-// i = SaturationA (exp(v/(Ideality·kT/q)) - 1), v without the drop on SeriesOhm.
-// The figures hold at 27 °C.
-type Diode struct {
-	SaturationA, Ideality, SeriesOhm float64
-}
-
 // Device is a timer family as its data sheet gives it.
 type Device struct {
 	Name                   string // trade number, upper case; "ideal" for the perfect timer

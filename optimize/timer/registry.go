@@ -1,7 +1,10 @@
 package timer
 
 // circuits is every wiring the program knows, in the order of listings.
-var circuits = []*Circuit{&classic}
+var circuits = []*Circuit{
+	&classic, &classicInverted, &diodeBypass, &dischargeLimb,
+	&outputFed, &outputFedSplit, &oneShot, &powerOnPulse,
+}
 
 // Circuits returns every circuit in the order of listings. The slice is the
 // caller's; the circuits are not to be changed.

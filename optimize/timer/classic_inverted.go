@@ -1,0 +1,19 @@
+package timer
+
+// classicInverted is classic with its output taken through an inverter, so that
+// high and low swap: the light is shorter than the dark. From an empty capacitor
+// the inverted output starts low, and its first high time is like all others.
+var classicInverted = Circuit{
+	Slug:      "classic-inverted",
+	Title:     "classic behind an inverter: low longer than high",
+	Resistors: []string{"ra", "rb"},
+	Inverter:  true,
+	HighTrend: classic.LowTrend,
+	LowTrend:  classic.HighTrend,
+	Phases: func(c *Conditions, v *Values) Phases {
+		p := classicPhases(c, v)
+		return Phases{HighS: p.LowS, LowS: p.HighS}
+	},
+	FirstHighS: func(c *Conditions, v *Values) float64 { return classicPhases(c, v).LowS },
+	Stalls:     classicStalls,
+}

@@ -1,0 +1,142 @@
+package timer
+
+import "math"
+
+// Diode is a diode's exponential law with its series resistance:
+// i = SaturationA (exp(v/(Ideality·kT/q)) - 1), v without the drop on SeriesOhm.
+// The figures hold at 27 °C. The zero Diode drops nothing and blocks wholly.
+type Diode struct {
+	SaturationA, Ideality, SeriesOhm float64
+}
+
+// Constants of the exponential law. Boltzmann's constant over the elementary
+// charge is exact since the SI of 2019; the temperature exponent and the
+// activation energy are SPICE's defaults for silicon (XTI, EG), which ngspice
+// uses where a model does not state them.
+const (
+	zeroCelsiusK      = 273.15
+	modelK            = 300.15 // 27 °C
+	boltzmannVPerK    = 1.380649e-23 / 1.602176634e-19
+	saturationExp     = 3.0
+	activationEnergyV = 1.11
+)
+
+// junction is a diode at a temperature: i = saturationA (exp(w) - 1) with
+// w = v/slopeV, behind seriesOhm. The zero junction drops nothing.
+type junction struct{ saturationA, slopeV, seriesOhm float64 }
+
+// at returns the diode at an ambient temperature: slopeV is N·kT/q and
+// IS(T) = IS (T/Tnom)^(XTI/N) exp((T/Tnom - 1) EG/(N·kT/q)), as SPICE has it.
+func (d Diode) at(ambientC float64) junction {
+	if d.SaturationA == 0 {
+		return junction{}
+	}
+	kelvin := ambientC + zeroCelsiusK
+	j := junction{d.SaturationA, d.Ideality * boltzmannVPerK * kelvin, d.SeriesOhm}
+	if kelvin != modelK {
+		ratio := kelvin / modelK
+		j.saturationA *= math.Exp(saturationExp/d.Ideality*math.Log(ratio) + (ratio-1)*activationEnergyV/j.slopeV)
+	}
+	return j
+}
+
+// solveW returns the w ≥ 0 at which p (exp(w)-1) + q w = drop, for p ≥ 0,
+// q > 0, drop ≥ 0. The left side is convex and rising: from above its root
+// Newton's steps fall to it and never pass it.
+func solveW(p, q, drop float64) float64 {
+	high := drop / q
+	if byExponential := math.Log1p(drop / p); byExponential < high {
+		high = byExponential
+		// One step of the fixed point lies near the root, on its left.
+		if w := math.Log1p(max(drop-q*high, 0) / p); w > 0 {
+			grown := math.Expm1(w)
+			high = min(high, w+(drop-p*grown-q*w)/(p*grown+p+q))
+		}
+	}
+	w := high
+	for range 60 {
+		grown := math.Expm1(w)
+		step := (p*grown + q*w - drop) / (p*grown + p + q)
+		w -= step
+		if step <= 1e-14*w {
+			break
+		}
+	}
+	return max(w, 0)
+}
+
+// blockingW is how many slopes of reverse voltage make a diode pass its
+// saturation current and no less: exp(-14) is below 1e-6.
+const blockingW = 14
+
+// seriesRampS returns the time in which the voltage between a source and the
+// capacitor falls from drop0 to drop1 while the source drives it through
+// source ohm, then r and a diode, s; +Inf where drop1 is not positive. A like
+// diode behind other ohm is reverse biased all the while and passes its
+// saturation current IS. With w = ln(1 + i/IS) the law drop = i R + slope w turns
+// t = C ∫ dv/(i + IS) into
+//
+//	t = C [ R (w0 - w1) + slope/IS (exp(-w1) - exp(-w0)) ]
+func (d junction) seriesRampS(r, other, source, farads, drop0, drop1 float64) float64 {
+	if drop1 <= 0 {
+		return math.Inf(1)
+	}
+	r += source
+	if d.saturationA == 0 {
+		return r * farads * math.Log(drop0/drop1)
+	}
+	r += d.seriesOhm
+	p := r * d.saturationA
+	w0, w1 := solveW(p, d.slopeV, drop0), solveW(p, d.slopeV, drop1)
+	return farads * (r*(w0-w1) + d.slopeV/d.saturationA*(math.Exp(-w1)-math.Exp(-w0)))
+}
+
+// bypassRampS returns the time in which the voltage between the supply and the
+// capacitor falls from drop0 to drop1 while the supply drives it through ra and
+// then rb with the diode across it, s; +Inf where drop1 is not positive.
+func (d junction) bypassRampS(ra, rb, farads, drop0, drop1 float64) float64 {
+	if drop1 <= 0 {
+		return math.Inf(1)
+	}
+	if d.saturationA == 0 || rb == 0 {
+		return ra * farads * math.Log(drop0/drop1)
+	}
+	share := 1 + ra/rb
+	p, q := d.saturationA*(ra+d.seriesOhm*share), d.slopeV*share
+	w0, w1 := solveW(p, q, drop0), solveW(p, q, drop1)
+	i0, i1 := d.bypassA(rb, w0), d.bypassA(rb, w1)
+	return farads * (ra*math.Log(i0/i1) + d.bypassOhm(rb, w0, w1))
+}
+
+// bypassA returns the current through the diode and rb together, A.
+func (d junction) bypassA(rb, w float64) float64 {
+	through := d.saturationA * math.Expm1(w)
+	return through + (through*d.seriesOhm+d.slopeV*w)/rb
+}
+
+// bypassOhm returns ∫ du/i from w1 to w0 over the voltage u on the diode and rb,
+// ohm: ∫ (seriesOhm IS exp(w) + slope)/i(w) dw, by Gauss and Legendre's rule of
+// six points. The integrand turns over within a few units of w and is 1/w near
+// zero, so a panel spans at most three units and at most a threefold rise.
+func (d junction) bypassOhm(rb, w0, w1 float64) float64 {
+	sum := 0.0
+	for low := w1; low < w0; {
+		high := min(w0, low+3, 3*low)
+		middle, half := (high+low)/2, (high-low)/2
+		for i, node := range legendreNodes {
+			for _, w := range [2]float64{middle - half*node, middle + half*node} {
+				slope := d.seriesOhm*d.saturationA*math.Exp(w) + d.slopeV
+				sum += half * legendreWeights[i] * slope / d.bypassA(rb, w)
+			}
+		}
+		low = high
+	}
+	return sum
+}
+
+// The positive nodes and their weights of the six-point Gauss-Legendre rule
+// (DLMF table 3.5.2; the test derives them again from the polynomial).
+var (
+	legendreNodes   = [3]float64{0.238619186083196909, 0.661209386466264514, 0.932469514203152028}
+	legendreWeights = [3]float64{0.467913934572691047, 0.360761573048138608, 0.171324492379170345}
+)

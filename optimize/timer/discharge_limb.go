@@ -1,0 +1,48 @@
+package timer
+
+import "fmt"
+
+// dischargeLimb is classic with RD between the RA-RB junction and the discharge
+// pin, which lengthens the low time. It runs only while RD plus the switch can
+// pull the junction below the lower level: RD < RA/2 for the ideal timer.
+//
+// HighS rises and LowS falls with RA, so the period has a minimum in RA.
+var dischargeLimb = Circuit{
+	Slug:      "discharge-limb",
+	Title:     "RD in the discharge path: low as long as high, or longer",
+	Resistors: []string{"ra", "rb", "rd"},
+	HighTrend: Trend{+1, +1, 0},
+	LowTrend:  Trend{-1, +1, +1},
+	Phases: func(c *Conditions, v *Values) Phases {
+		ra, rb := v.Ohms[0], v.Ohms[1]
+		vth, rth := pulledDown(c, ra, rb, v.Ohms[2])
+		return Phases{
+			HighS: rampS(c.SupplyV, ra+rb, v.Farads, c.LowLevelV, c.HighLevelV),
+			LowS:  rampS(vth, rth, v.Farads, c.HighLevelV, c.LowLevelV),
+		}
+	},
+	FirstHighS: classicFirstHighS,
+	Stalls: func(c *Conditions, v *Values) string {
+		vth, _ := pulledDown(c, v.Ohms[0], v.Ohms[1], v.Ohms[2])
+		low := stallsDischarging(c, "rd and the discharge pin, with ra pulling up against them, take the capacitor", vth)
+		if low != "" {
+			low += limbAdvice(c, v.Ohms[0])
+		}
+		return noOscillation(stallsCharging(c, "ra and rb charge the capacitor", c.SupplyV), low)
+	},
+}
+
+// limbLimitOhm returns the rd at which the discharge of a discharge-limb circuit
+// no longer reaches the lower level, ohm; not positive where none is small
+// enough. RX = RA (Vlo-Vsat)/(VCC-Vlo), less the switch.
+func limbLimitOhm(c *Conditions, ra float64) float64 {
+	return ra*(c.LowLevelV-c.SwitchV)/(c.SupplyV-c.LowLevelV) - c.SwitchOhm
+}
+
+func limbAdvice(c *Conditions, ra float64) string {
+	limit := limbLimitOhm(c, ra)
+	if limit <= 0 {
+		return fmt.Sprintf(" (no rd is small enough for ra of %s)", engineering(ra, "ohm"))
+	}
+	return fmt.Sprintf(" (with ra of %s, rd must stay below %s)", engineering(ra, "ohm"), engineering(limit, "ohm"))
+}

@@ -1,0 +1,31 @@
+package timer
+
+// oneShot gives one pulse a trigger: the discharge pin holds the capacitor down
+// at rest and lets go of it, R charges it to the upper level. PulseS is HighS,
+// ln3 R C for the ideal timer.
+var oneShot = Circuit{
+	Slug:      "one-shot",
+	Title:     "one pulse after each trigger",
+	Resistors: []string{"r"},
+	OneShot:   true,
+	HighTrend: Trend{+1},
+	Phases: func(c *Conditions, v *Values) Phases {
+		rest, _ := pulledDown(c, v.Ohms[0], 0, 0)
+		return Phases{HighS: pulseS(c, v, rest)}
+	},
+	FirstHighS: func(*Conditions, *Values) float64 { return 0 },
+	Stalls:     pulseStalls,
+}
+
+// pulseS returns how long R takes to charge the capacitor from startV to the
+// upper level, s: 0 where it rests there already, so that no pulse comes.
+func pulseS(c *Conditions, v *Values, startV float64) float64 {
+	if startV >= c.HighLevelV {
+		return 0
+	}
+	return rampS(c.SupplyV, v.Ohms[0], v.Farads, startV, c.HighLevelV)
+}
+
+func pulseStalls(c *Conditions, _ *Values) string {
+	return because("the pulse never ends: ", stallsCharging(c, "r charges the capacitor", c.SupplyV))
+}

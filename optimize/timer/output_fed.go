@@ -1,0 +1,30 @@
+package timer
+
+// outputFed charges and discharges the capacitor from the output through one
+// resistor: equal times where the output swings from rail to rail. A bipolar
+// timer pulls high to well below the supply, so there the high time is longer
+// or never ends.
+var outputFed = Circuit{
+	Slug:      "output-fed",
+	Title:     "the output charges and discharges through R: high equals low",
+	Resistors: []string{"r"},
+	HighTrend: Trend{+1},
+	LowTrend:  Trend{+1},
+	Phases: func(c *Conditions, v *Values) Phases {
+		r := v.Ohms[0]
+		return Phases{
+			HighS: rampS(c.OutHighV, r+c.OutHighOhm, v.Farads, c.LowLevelV, c.HighLevelV),
+			LowS:  rampS(c.OutLowV, r+c.OutLowOhm, v.Farads, c.HighLevelV, c.LowLevelV),
+		}
+	},
+	FirstHighS: func(c *Conditions, v *Values) float64 {
+		return rampS(c.OutHighV, v.Ohms[0]+c.OutHighOhm, v.Farads, 0, c.HighLevelV)
+	},
+	Stalls: outputFedStalls,
+}
+
+func outputFedStalls(c *Conditions, _ *Values) string {
+	return noOscillation(
+		stallsCharging(c, "the output, high, charges the capacitor", c.OutHighV),
+		stallsDischarging(c, "the output, low, takes the capacitor", c.OutLowV))
+}

@@ -1,0 +1,24 @@
+package timer
+
+// outputFedSplit is output-fed with a diode and a resistor for each direction:
+// RH sets the high time and RL the low time, each on its own. Two like diodes.
+var outputFedSplit = Circuit{
+	Slug:      "output-fed-split",
+	Title:     "the output charges through RH and discharges through RL: any duty",
+	Resistors: []string{"rh", "rl"},
+	Diodes:    2,
+	HighTrend: Trend{+1, 0},
+	LowTrend:  Trend{0, +1},
+	Phases: func(c *Conditions, v *Values) Phases {
+		d := v.Diode.at(c.AmbientC)
+		return Phases{
+			HighS: d.seriesRampS(v.Ohms[0], v.Ohms[1], c.OutHighOhm, v.Farads, c.OutHighV-c.LowLevelV, c.OutHighV-c.HighLevelV),
+			LowS:  d.seriesRampS(v.Ohms[1], v.Ohms[0], c.OutLowOhm, v.Farads, c.HighLevelV-c.OutLowV, c.LowLevelV-c.OutLowV),
+		}
+	},
+	FirstHighS: func(c *Conditions, v *Values) float64 {
+		d := v.Diode.at(c.AmbientC)
+		return d.seriesRampS(v.Ohms[0], v.Ohms[1], c.OutHighOhm, v.Farads, c.OutHighV, c.OutHighV-c.HighLevelV)
+	},
+	Stalls: outputFedStalls,
+}

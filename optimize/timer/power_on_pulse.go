@@ -1,0 +1,15 @@
+package timer
+
+// powerOnPulse gives one pulse when the supply comes up with the capacitor
+// empty: trigger and threshold follow the capacitor, the discharge pin is not
+// used. PulseS is HighS, ln3 R C for the ideal timer.
+var powerOnPulse = Circuit{
+	Slug:       "power-on-pulse",
+	Title:      "one pulse at power-up",
+	Resistors:  []string{"r"},
+	OneShot:    true,
+	HighTrend:  Trend{+1},
+	Phases:     func(c *Conditions, v *Values) Phases { return Phases{HighS: pulseS(c, v, 0)} },
+	FirstHighS: func(*Conditions, *Values) float64 { return 0 },
+	Stalls:     pulseStalls,
+}

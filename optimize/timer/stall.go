@@ -1,0 +1,76 @@
+package timer
+
+import (
+	"fmt"
+	"math"
+	"strings"
+)
+
+// stallsCharging returns why a charge toward vinf never ends the high phase, or
+// "" where it does. source says what charges, with its verb.
+func stallsCharging(c *Conditions, source string, vinf float64) string {
+	if vinf > c.HighLevelV {
+		return ""
+	}
+	reached, level := volts(vinf, c.HighLevelV)
+	return fmt.Sprintf("%s to %s at most, not past the upper level of %s", source, reached, level)
+}
+
+// stallsDischarging is stallsCharging for the low phase.
+func stallsDischarging(c *Conditions, source string, vinf float64) string {
+	if vinf < c.LowLevelV {
+		return ""
+	}
+	reached, level := volts(vinf, c.LowLevelV)
+	return fmt.Sprintf("%s to %s at least, not past the lower level of %s", source, reached, level)
+}
+
+// noOscillation joins the reasons that are not empty into one sentence.
+func noOscillation(reasons ...string) string {
+	return because("does not oscillate: ", reasons...)
+}
+
+func because(lead string, reasons ...string) string {
+	kept := reasons[:0]
+	for _, reason := range reasons {
+		if reason != "" {
+			kept = append(kept, reason)
+		}
+	}
+	if len(kept) == 0 {
+		return ""
+	}
+	return lead + strings.Join(kept, "; ")
+}
+
+// volts returns two voltages as text with just enough digits to tell them apart.
+func volts(a, b float64) (string, string) {
+	for digits := 3; digits < 9; digits++ {
+		ta, tb := fmt.Sprintf("%.*g V", digits, a), fmt.Sprintf("%.*g V", digits, b)
+		if ta != tb || a == b {
+			return ta, tb
+		}
+	}
+	return fmt.Sprintf("%.9g V", a), fmt.Sprintf("%.9g V", b)
+}
+
+// engineering returns x with three digits, an SI prefix and its unit: "49.9 kohm".
+func engineering(x float64, unit string) string {
+	if x == 0 || math.IsInf(x, 0) || math.IsNaN(x) {
+		return fmt.Sprintf("%g %s", x, unit)
+	}
+	const prefixes = "pnum kMG"
+	step := min(max(int(math.Floor(math.Log10(math.Abs(x))/3)), -4), 3)
+	scaled := x / math.Pow(1000, float64(step))
+	if math.Abs(scaled) >= 999.5 && step < 3 {
+		scaled, step = scaled/1000, step+1
+	}
+	text := fmt.Sprintf("%.3g", scaled)
+	if strings.Contains(text, "e") {
+		text = fmt.Sprintf("%.0f", scaled)
+	}
+	if step == 0 {
+		return text + " " + unit
+	}
+	return text + " " + prefixes[step+4:step+5] + unit
+}
