@@ -25,6 +25,12 @@ func (e *Error) Within(text string, offset int) *Error {
 	return &Error{Text: text, Column: e.Column + offset, Message: e.Message}
 }
 
+// Errorf returns an Error about the byte at offset at (from 0) of text, for
+// packages that read longer texts made of quantities.
+func Errorf(text string, at int, format string, args ...any) error {
+	return errorAt(text, at, format, args...)
+}
+
 // errorAt returns an Error about the byte at offset at (from 0) of text.
 func errorAt(text string, at int, format string, args ...any) *Error {
 	return &Error{Text: text, Column: at + 1, Message: fmt.Sprintf(format, args...)}

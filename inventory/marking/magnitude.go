@@ -5,6 +5,7 @@ import (
 	"strings"
 )
 
+// siPrefixes are those of quantities other than resistance and capacitance.
 const siPrefixes = "pnuµμmkKMG"
 
 // magnitudes is what ParseMagnitude reads, by SI symbol.
@@ -15,11 +16,16 @@ var magnitudes = map[string]*family{
 	"A":  {noun: "a current", sample: "10mA", symbol: "A", units: []string{"amperes", "ampere", "amps", "amp", "A"}, prefixes: siPrefixes},
 	"W":  {noun: "a power", sample: "0.25W or 1/4W", symbol: "W", units: []string{"watts", "watt", "W"}, prefixes: siPrefixes, points: "Ww"},
 	"C":  {noun: "a temperature", sample: "25C", symbol: "°C", units: []string{"°C", "℃", "degC", "C"}, signed: true},
+	"%":  {noun: "a percentage", sample: "3%", units: []string{"%"}, power: -2},
+	"pt": {noun: "a number of points", sample: "1pt", units: []string{"points", "point", "pts", "pt"}, power: -2},
+	"":   {noun: "a number", sample: "0.5"},
 }
 
 // ParseMagnitude returns the quantity that the text writes, in the unit: "s",
-// "Hz", "V", "A", "W" or "C" (degree Celsius). The unit may be left out, since
-// the caller has one ("500m" is 0.5 V), except that 5m of time could be minutes.
+// "Hz", "V", "A", "W" or "C" (degree Celsius); "%" and "pt" (points of a
+// percentage) come as a share, 3% as 0.03; "" is a plain number. The unit may be
+// left out, since the caller has one ("500m" is 0.5 V), except that 5m of time
+// could be minutes.
 // A decimal comma is read; a comma before exactly three digits may group
 // thousands and is refused. Power may be a fraction ("1/4W"). Only a temperature
 // may be negative; 0 is for the caller to judge.

@@ -15,6 +15,7 @@ type family struct {
 	prefixes string // accepted prefixes, a subset of those in powers
 	points   string // unit letters that may stand as the decimal point
 	signed   bool   // may be negative
+	power    int    // of ten that the unit stands for
 	min, max float64
 	limits   string // min and max for people
 }
@@ -70,6 +71,7 @@ func (f *family) read(text string) (quantity, error) {
 	r.space()
 	q.unit = slices.ContainsFunc(f.units, r.take) || f.isUnit(q.point)
 	r.space()
+	q.decimal = q.scaled(f.power)
 	q.rest, q.restAt = strings.TrimSpace(text[r.at:]), r.at
 	return q, nil
 }
