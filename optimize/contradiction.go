@@ -1,11 +1,11 @@
 package optimize
 
 import (
-	"fmt"
 	"math/big"
 	"slices"
 	"strings"
 
+	"tickdrawer/inventory"
 	"tickdrawer/inventory/marking"
 )
 
@@ -19,18 +19,18 @@ func NewRequirements(requirements ...Requirement) ([]Requirement, error) {
 	return sorted, nil
 }
 
-// CheckRequirements returns an error that says which requirements cannot stand
+// CheckRequirements returns an error (inventory.Invalid) that says which requirements cannot stand
 // together: none at all, a measure stated twice, a pulse beside measures of an
 // oscillator, or two or three that no pair of a high and a low time meets, in
 // exact arithmetic.
 func CheckRequirements(requirements []Requirement) error {
 	if len(requirements) == 0 {
-		return fmt.Errorf("nothing is asked for; state at least one of %s", measureWords())
+		return inventory.Errorf(inventory.Invalid, "nothing is asked for; state at least one of %s", measureWords())
 	}
 	stated := map[Measure]bool{}
 	for _, r := range requirements {
 		if stated[r.Measure] {
-			return fmt.Errorf("the %s is stated twice; state it once", r.Measure)
+			return inventory.Errorf(inventory.Invalid, "the %s is stated twice; state it once", r.Measure)
 		}
 		stated[r.Measure] = true
 	}
@@ -39,7 +39,7 @@ func CheckRequirements(requirements []Requirement) error {
 		if other == Pulse {
 			other = requirements[1].Measure
 		}
-		return fmt.Errorf("a pulse is of a one-shot and a %s of an oscillator; state one or the other", other)
+		return inventory.Errorf(inventory.Invalid, "a pulse is of a one-shot and a %s of an oscillator; state one or the other", other)
 	}
 	return checkTogether(requirements)
 }
@@ -60,7 +60,7 @@ func checkTogether(requirements []Requirement) error {
 	for i := range n {
 		for j := range i {
 			if a, b := requirements[j], requirements[i]; !meetable(a, b) {
-				return fmt.Errorf("%s and %s exclude each other; change or leave out one of them", a.words(), b.words())
+				return inventory.Errorf(inventory.Invalid, "%s and %s exclude each other; change or leave out one of them", a.words(), b.words())
 			}
 		}
 	}
@@ -68,7 +68,7 @@ func checkTogether(requirements []Requirement) error {
 		for j := range i {
 			for k := range j {
 				if a, b, c := requirements[k], requirements[j], requirements[i]; !meetable(a, b, c) {
-					return fmt.Errorf("%s, %s and %s exclude each other: the first two give a %s of %s; change or leave out one of them",
+					return inventory.Errorf(inventory.Invalid, "%s, %s and %s exclude each other: the first two give a %s of %s; change or leave out one of them",
 						a.words(), b.words(), c.words(), c.Measure, c.Measure.bandWords(extent(c.Measure, vertices([]Requirement{a, b}))))
 				}
 			}

@@ -1,11 +1,7 @@
 package optimize
 
 import (
-	"errors"
-	"math"
 	"strings"
-	"unicode"
-	"unicode/utf8"
 
 	"tickdrawer/inventory/marking"
 )
@@ -24,13 +20,8 @@ const (
 
 // What a timer can be supplied with, V, and work in, °C.
 const (
-	highestV             = 1e4
-	coldestC, hottestC   = -273.15, 1000
-	rangeMark            = ".."
-	ellipsis             = "…" // an editor may make one of two points
-	signs                = "±+-−"
-	dutyAllowance        = "±1pt"
-	allowanceAlternative = "±3%, +2%-1% or a range such as 3.9s..4.1s"
+	highestV           = 1e4
+	coldestC, hottestC = -273.15, 1000
 )
 
 // ParseRequirement returns the requirement that the text writes for the measure:
@@ -65,7 +56,7 @@ func parseAllowance(m Measure, text string) (Allowance, error) {
 		if a.Min >= a.Max {
 			return a, to.errorf("the range ends at or below its beginning; write the smaller %s first", m)
 		}
-		a.Target = (a.Min + a.Max) / 2
+		a.Target = decimalMiddle(a.Min, a.Max)
 		return a, nil
 	}
 	written, terms, err := cutAllowance(text)
@@ -87,25 +78,27 @@ func parseAllowance(m Measure, text string) (Allowance, error) {
 	case m == Duty:
 		below, above = defaultPoints, defaultPoints
 	default:
-		below, above = defaultShare*target, defaultShare*target
+		below = decimalProduct(defaultShare, target)
+		above = below
 	}
-	a := Allowance{Target: target, Min: target - below, Max: target + above}
+	a := Allowance{Target: target, Min: decimalSum(target, -below), Max: decimalSum(target, above)}
 	switch {
 	case below == 0 && above == 0:
 		return a, at.errorf("no network of real parts meets an allowance of nothing; write one such as %s", m.sampleAllowance())
 	case a.Min <= 0:
 		return a, at.errorf("the allowance reaches down to zero or below; write a smaller one such as %s", m.sampleAllowance())
 	case m == Duty && a.Max >= 1:
-		return a, at.errorf("the allowance reaches up to a duty of 100 %%, which is no oscillation; write a smaller one such as %s", dutyAllowance)
+		return a, at.errorf("the allowance reaches up to a duty of 100 %%, which is no oscillation; write a smaller one such as %s", m.sampleAllowance())
 	case a.Min == a.Max:
 		return a, at.errorf("the allowance is too small to compute with; write one such as %s", m.sampleAllowance())
 	}
 	return a, nil
 }
 
+// sampleAllowance returns how an allowance is written, for messages.
 func (m Measure) sampleAllowance() string {
 	if m == Duty {
-		return dutyAllowance
+		return "±1pt"
 	}
 	return "±3%"
 }
@@ -173,7 +166,7 @@ func requirementDeviation(m Measure, t term, target piece, value float64) (float
 func deviation(t term, unit string, value float64) (float64, error) {
 	if t.percent() {
 		share, err := marking.ParseMagnitudeWithUnit(t.written, "%")
-		return share * value, t.within(err)
+		return decimalProduct(share, value), t.within(err)
 	}
 	if x, err := marking.ParseMagnitude(t.written, ""); err == nil && x != 0 {
 		return 0, t.errorf("%s could be %s %% or %s %s; write the unit", t.written, t.written, t.written, unit)
@@ -204,7 +197,7 @@ func ParseRange(unit, text string) (Range, error) {
 		case low > high:
 			return Range{}, to.errorf("the range ends below its beginning; write the smaller value first")
 		}
-		return Range{Nominal: (low + high) / 2, Min: low, Max: high}, nil
+		return Range{Nominal: decimalMiddle(low, high), Min: low, Max: high}, nil
 	}
 	written, terms, err := cutAllowance(text)
 	if err != nil {
@@ -223,7 +216,7 @@ func ParseRange(unit, text string) (Range, error) {
 	if err != nil {
 		return Range{}, err
 	}
-	r := Range{Nominal: nominal, Min: nominal - below, Max: nominal + above}
+	r := Range{Nominal: nominal, Min: decimalSum(nominal, -below), Max: decimalSum(nominal, above)}
 	for _, end := range []float64{r.Min, r.Max} {
 		if why := unreasonable(unit, end); why != "" {
 			return Range{}, terms[0].errorf("the spread reaches %s", why)
@@ -258,143 +251,3 @@ func unreasonable(unit string, x float64) string {
 	}
 	return ""
 }
-
-// piece is a stretch of a longer text.
-type piece struct {
-	whole   string
-	at      int // offset in whole
-	written string
-}
-
-// cut returns the piece of the text between two offsets without the white space
-// around it.
-func cut(text string, from, to int) piece {
-	written := strings.TrimLeftFunc(text[from:to], unicode.IsSpace)
-	return piece{text, to - len(written), strings.TrimRightFunc(written, unicode.IsSpace)}
-}
-
-func (p piece) percent() bool { return strings.HasSuffix(p.written, "%") }
-
-// errorf returns an error that points at the piece.
-func (p piece) errorf(format string, args ...any) error {
-	return marking.Errorf(p.whole, p.at, format, args...)
-}
-
-// within returns an error about the piece as one about the whole text.
-func (p piece) within(err error) error {
-	var e *marking.Error
-	if errors.As(err, &e) {
-		return e.Within(p.whole, p.at)
-	}
-	return err
-}
-
-// cutRange returns the two ends of a text that writes a range.
-func cutRange(text string) (from, to piece, found bool) {
-	for _, mark := range []string{rangeMark, ellipsis} {
-		if at := strings.Index(text, mark); at >= 0 {
-			return cut(text, 0, at), cut(text, at+len(mark), len(text)), true
-		}
-	}
-	return piece{}, piece{}, false
-}
-
-// term is one deviation of an allowance.
-type term struct {
-	piece
-	below, above bool // the sides that it is for
-}
-
-// terms is a whole allowance: nothing, one term for both sides, or one for each.
-type terms []term
-
-// deviations returns how far the terms go below and above, by what of reads in
-// one of them.
-func (ts terms) deviations(of func(term) (float64, error)) (below, above float64, err error) {
-	for _, t := range ts {
-		x, err := of(t)
-		if err != nil {
-			return 0, 0, err
-		}
-		if math.IsInf(x, 0) {
-			return 0, 0, t.errorf("this is out of reason")
-		}
-		if t.below {
-			below = x
-		}
-		if t.above {
-			above = x
-		}
-	}
-	return below, above, nil
-}
-
-// cutAllowance returns what precedes the first sign that is not the number's own
-// or its exponent's, and the terms from there on.
-func cutAllowance(text string) (target piece, ts terms, err error) {
-	at := nextSign(text, len(text)-len(strings.TrimLeftFunc(text, unicode.IsSpace)), true)
-	target = cut(text, 0, at)
-	for at < len(text) {
-		var t term
-		signAt := at
-		for at < len(text) {
-			c, size := utf8.DecodeRuneInString(text[at:])
-			switch {
-			case c == '±':
-				t.below, t.above = true, true
-			case c == '+':
-				t.above = true
-			case c == '-' || c == '−':
-				t.below = true
-			case c != '/' && !unicode.IsSpace(c):
-				size = 0
-			}
-			if size == 0 {
-				break
-			}
-			at += size
-		}
-		end := nextSign(text, at, false)
-		t.piece = cut(text, at, end)
-		if end < len(text) {
-			t.written = strings.TrimRight(t.written, "/ ")
-		}
-		if t.written == "" {
-			return target, nil, marking.Errorf(text, signAt, "no allowance follows the sign; write %s", allowanceAlternative)
-		}
-		ts = append(ts, t)
-		at = end
-	}
-	return target, ts, ts.check()
-}
-
-// check refuses anything but one term for both sides or one for each.
-func (ts terms) check() error {
-	switch {
-	case len(ts) == 0:
-	case len(ts) == 1 && !(ts[0].below && ts[0].above):
-		return ts[0].errorf("only one side of the allowance is written; write both as +2%%-1%%, one for both as ±3%%, or a range such as 3.9s..4.1s")
-	case len(ts) > 2, len(ts) == 2 && (ts[0].above == ts[1].above || ts[0].below == ts[1].below):
-		return ts[1].errorf("an allowance has one term for both sides or one for each; write %s", allowanceAlternative)
-	}
-	return nil
-}
-
-// nextSign returns the offset of the first sign of the text from an offset on,
-// len(text) where there is none. The sign of an exponent (1E-3) does not count;
-// neither does the very first character where it is the number's own sign.
-func nextSign(text string, from int, skipOwn bool) int {
-	for i, c := range text[from:] {
-		at := from + i
-		if !strings.ContainsRune(signs, c) || i == 0 && skipOwn && c != '±' {
-			continue
-		}
-		exponent := at >= 2 && (text[at-1]|0x20) == 'e' && isDigit(text[at-2]) && at+1 < len(text) && isDigit(text[at+1])
-		if !exponent {
-			return at
-		}
-	}
-	return len(text)
-}
-
-func isDigit(c byte) bool { return '0' <= c && c <= '9' }

@@ -1,16 +1,15 @@
 package marking
 
 import (
-	"slices"
 	"strings"
 )
 
 // code is three digits on a capacitor with what follows them.
 type code struct {
-	digits string
-	at     int
-	letter byte // tolerance letter as printed, 0 where none
-	second byte // F, N or P: the letter is also a unit or a prefix; 0 otherwise
+	digits   string
+	at       int
+	letter   byte // tolerance letter in upper case, 0 where none
+	letterAt int
 }
 
 // ParseCapacitorCode returns the capacitance of a capacitor's three-digit code,
@@ -42,6 +41,7 @@ func findCode(text string) (code, bool) {
 		return c, true
 	}
 	letter := r.text[r.at]
+	c.letterAt = r.at
 	r.at++
 	if !r.end() || strings.IndexByte("pnum", letter) >= 0 {
 		return code{}, false
@@ -53,9 +53,6 @@ func findCode(text string) (code, bool) {
 		return code{}, false
 	}
 	c.letter = letter
-	if strings.IndexByte("FNP", letter) >= 0 {
-		c.second = letter
-	}
 	return c, true
 }
 
@@ -71,28 +68,32 @@ func (c code) farads(text string) (float64, *Tolerance, error) {
 		picofarads.exponent = -1 - 12
 	}
 	farads := picofarads.float()
-	plain := decimal{digits: c.digits, exponent: -12}.float()
-	switch {
-	case c.second != 0:
-		return 0, nil, c.ambiguous(text, farads)
-	case c.letter != 0:
-		tolerance, err := letterTolerance(text, strings.LastIndexByte(strings.ToUpper(text), c.letter), c.letter, farads, "f")
+	if power, found := alsoUnits[c.letter]; found {
+		return 0, nil, c.ambiguous(text, farads, power)
+	}
+	if c.letter != 0 {
+		tolerance, err := letterTolerance(text, c.letterAt, c.letter, farads, "f")
 		if err != nil {
 			return 0, nil, err
 		}
 		return farads, &tolerance, nil
-	case zeros == 0 && slices.Contains(Preferred(24), int(c.digits[0]-'0')*10+int(c.digits[1]-'0')):
+	}
+	if zeros == 0 && preferredDigits(c.digits) {
+		plain := decimal{digits: c.digits, exponent: -12}.float()
 		return 0, nil, errorAt(text, c.at, "%s could be %s (three-digit code) or %s (plain number); write %s or %s",
 			c.digits, FormatFarads(farads), FormatFarads(plain), CompactFarads(farads), CompactFarads(plain))
 	}
 	return farads, nil, nil
 }
 
+// alsoUnits holds the tolerance letters that are a unit or a prefix as well, with
+// the power of ten that they then stand for.
+var alsoUnits = map[byte]int{'F': 0, 'N': -9, 'P': -12}
+
 // ambiguous returns the error about a letter that is a tolerance after a code
-// and a unit or a prefix after a number.
-func (c code) ambiguous(text string, farads float64) error {
-	power := map[byte]int{'F': 0, 'N': -9, 'P': -12}[c.second]
+// and a power of ten after a number.
+func (c code) ambiguous(text string, farads float64, power int) error {
 	plain := decimal{digits: c.digits, exponent: power}.float()
-	return errorAt(text, c.at+3, "%s%c could be %s with the tolerance letter %c (three-digit code) or %s (plain number); write %s and the tolerance apart, or %s",
+	return errorAt(text, c.letterAt, "%s%c could be %s with the tolerance letter %c (three-digit code) or %s (plain number); write %s and the tolerance apart, or %s",
 		c.digits, c.letter, FormatFarads(farads), c.letter, FormatFarads(plain), CompactFarads(farads), CompactFarads(plain))
 }

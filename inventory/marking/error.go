@@ -2,7 +2,6 @@ package marking
 
 import (
 	"fmt"
-	"strings"
 	"unicode/utf8"
 )
 
@@ -61,13 +60,4 @@ func characterAt(text string, at int) string {
 		return fmt.Sprintf("byte 0x%02X, which is not UTF-8 text,", text[at])
 	}
 	return fmt.Sprintf("%q", string(r))
-}
-
-// alternatives returns the words as "a, b or c".
-func alternatives(words ...string) string {
-	if len(words) < 2 {
-		return strings.Join(words, "")
-	}
-	last := len(words) - 1
-	return strings.Join(words[:last], ", ") + " or " + words[last]
 }

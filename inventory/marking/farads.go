@@ -39,7 +39,7 @@ func ParseMarkedFarads(text string) (float64, *Tolerance, error) {
 	}
 	if q.rest != "" && !q.unit && q.prefix == 0 {
 		if r := q.rest[0]; r == 'R' || r == 'r' {
-			return 0, nil, errorAt(text, q.restAt, "R is the decimal point of a resistance; write %s as 4p7 for 4.7 pF", capacitance.noun)
+			return 0, nil, errorAt(text, q.restAt, "R is the decimal point of a resistance; write 4.7 pF as 4p7")
 		}
 		return 0, nil, capacitance.stray(text, q)
 	}
@@ -50,20 +50,9 @@ func ParseMarkedFarads(text string) (float64, *Tolerance, error) {
 	// From 1000 µF on the trade writes 2,200 µF; a meter shows 4.682 nF. Two
 	// readings are there only where the larger is a value that is made.
 	if q.pointAt >= 0 && preferredDigits(q.digits) {
-		return 0, nil, thousands(text, q, FormatFarads, CompactFarads)
+		return 0, nil, thousands(text, q.decimal, FormatFarads, CompactFarads)
 	}
-	farads, err := capacitance.value(text, q)
-	if err != nil || q.rest == "" {
-		return farads, nil, err
-	}
-	if len(q.rest) > 1 || !strings.Contains(toleranceLetters, q.rest) {
-		return 0, nil, capacitance.stray(text, q)
-	}
-	tolerance, err := letterTolerance(text, q.restAt, q.rest[0], farads, "f")
-	if err != nil {
-		return 0, nil, err
-	}
-	return farads, &tolerance, nil
+	return capacitance.marked(text, q, "f")
 }
 
 // preferredDigits reports whether the digits are an E24 value with zeros after.
@@ -72,5 +61,5 @@ func preferredDigits(digits string) bool {
 	if len(trimmed) == 1 {
 		trimmed += "0"
 	}
-	return len(trimmed) == 2 && slices.Contains(Preferred(24), int(trimmed[0]-'0')*10+int(trimmed[1]-'0'))
+	return len(trimmed) == 2 && slices.Contains(e24[:], int(trimmed[0]-'0')*10+int(trimmed[1]-'0'))
 }

@@ -12,12 +12,12 @@ const siPrefixes = "pnuµμmkKMG"
 var magnitudes = map[string]*family{
 	"s":  {noun: "a time", sample: "4s or 500ms", symbol: "s", units: []string{"seconds", "second", "sec", "s"}, prefixes: siPrefixes},
 	"Hz": {noun: "a frequency", sample: "420Hz or 1.2kHz", symbol: "Hz", units: []string{"Hz"}, prefixes: siPrefixes},
-	"V":  {noun: "a voltage", sample: "9V or 2.4V", symbol: "V", units: []string{"volts", "volt", "VDC", "V"}, prefixes: siPrefixes, points: "Vv"},
+	"V":  {noun: "a voltage", sample: "9V or 2.4V", symbol: "V", units: []string{"volts", "volt", "V DC", "VDC", "V"}, prefixes: siPrefixes, points: "Vv"},
 	"A":  {noun: "a current", sample: "10mA", symbol: "A", units: []string{"amperes", "ampere", "amps", "amp", "A"}, prefixes: siPrefixes},
 	"W":  {noun: "a power", sample: "0.25W or 1/4W", symbol: "W", units: []string{"watts", "watt", "W"}, prefixes: siPrefixes, points: "Ww"},
 	"C":  {noun: "a temperature", sample: "25C", symbol: "°C", units: []string{"°C", "℃", "degC", "C"}, signed: true},
-	"%":  {noun: "a percentage", sample: "3%", units: []string{"%"}, power: -2},
-	"pt": {noun: "a number of points", sample: "1pt", units: []string{"points", "point", "pts", "pt"}, power: -2},
+	"%":  {noun: "a percentage", sample: "3%", symbol: "%", units: []string{"%"}, power: -2},
+	"pt": {noun: "a number of points", sample: "1pt", symbol: "pt", units: []string{"points", "point", "pts", "pt"}, power: -2},
 	"":   {noun: "a number", sample: "0.5"},
 }
 
@@ -52,7 +52,7 @@ func parseMagnitude(text, unit string) (float64, quantity, error) {
 		panic("marking: no quantity has the unit " + unit)
 	}
 	limited := *f
-	limited.max, limited.limits = math.MaxFloat64, "1e-308 to 1e308"
+	limited.nought, limited.max, limited.limits = true, math.MaxFloat64, "1e-308 to 1e308"
 	q, err := limited.read(text)
 	if err != nil {
 		return 0, q, err
@@ -68,12 +68,21 @@ func parseMagnitude(text, unit string) (float64, quantity, error) {
 	case q.rest != "":
 		return 0, q, limited.stray(text, q)
 	case q.pointAt >= 0 && text[q.pointAt] == ',':
-		format := func(x float64) string { return engineering(x, plainSteps, f.symbol) }
-		written := func(x float64) string { return strings.ReplaceAll(format(x), " ", "") }
-		return 0, q, thousands(text, q, format, written)
+		return 0, q, limited.comma(text, q)
 	}
 	x, err := limited.value(text, q)
 	return x, q, err
+}
+
+// comma returns the error about a comma that may group thousands.
+func (f *family) comma(text string, q quantity) error {
+	steps := noSteps
+	if f.prefixes != "" {
+		steps = plainSteps
+	}
+	format := func(x float64) string { return strings.TrimSpace(engineering(x, steps, f.symbol)) }
+	compact := func(x float64) string { return strings.ReplaceAll(format(x), " ", "") }
+	return thousands(text, q.scaled(-f.power), format, compact)
 }
 
 // wattFraction returns the power written as a fraction, from the quantity that

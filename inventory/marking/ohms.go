@@ -2,20 +2,14 @@ package marking
 
 import "strings"
 
-// The largest resistance that a marking can mean, and the smallest above a
-// 0 ohm link: beyond them a row's value is in the wrong column or unit.
-const (
-	largestOhms  = 1e12
-	smallestOhms = 1e-6
-)
-
 var resistance = family{
 	noun: "a resistance", sample: "4k7, 4.7k or 4R7", symbol: "Ω",
 	// U+03A9 and U+2126 look the same.
 	units:    []string{"Ω", "\u2126", "ohms", "ohm", "R"},
 	prefixes: "mLkKMGT",
 	points:   "RrΩ\u2126",
-	max:      largestOhms, limits: "1 µΩ to 1 TΩ",
+	nought:   true, // a link
+	min:      1e-6, max: 1e12, limits: "1 µΩ to 1 TΩ",
 }
 
 // ParseOhms returns the resistance that the text writes, in ohm: a number with
@@ -24,7 +18,8 @@ var resistance = family{
 // milli and M mega, always. 0 is a link. A tolerance letter after the prefix
 // (4K7J) is read over; ParseMarkedOhms returns it.
 //
-// The error is an *Error: not a resistance, above 1e12 ohm, or of two readings.
+// The error is an *Error: not a resistance, below 1e-6 (but for 0) or above
+// 1e12 ohm, or of two readings (4,700 or 4.700).
 func ParseOhms(text string) (float64, error) {
 	ohms, _, err := ParseMarkedOhms(text)
 	return ohms, err
@@ -40,28 +35,17 @@ func ParseMarkedOhms(text string) (float64, *Tolerance, error) {
 	if err := threeDigitResistor(text, q); err != nil {
 		return 0, nil, err
 	}
-	// A prefix of kilo or more rules thousands out: the trade writes 4.7M.
-	if q.pointAt >= 0 && q.prefix == 0 {
-		return 0, nil, thousands(text, q, FormatOhms, CompactOhms)
+	if q.pointAt >= 0 && mayGroupOhms(text, q) {
+		return 0, nil, thousands(text, q.decimal, FormatOhms, CompactOhms)
 	}
-	ohms, err := resistance.value(text, q)
-	if err != nil {
-		return 0, nil, err
-	}
-	if ohms != 0 && ohms < smallestOhms {
-		return 0, nil, errorAt(text, q.at, "a resistance of %s Ω is out of reason (%s); m is milli and M is mega, always", scientific(ohms), resistance.limits)
-	}
-	if q.rest == "" {
-		return ohms, nil, nil
-	}
-	if !q.unit && q.prefix == 0 || len(q.rest) > 1 || !strings.Contains(toleranceLetters, q.rest) {
-		return 0, nil, resistance.stray(text, q)
-	}
-	tolerance, err := letterTolerance(text, q.restAt, q.rest[0], ohms, "ohm")
-	if err != nil {
-		return 0, nil, err
-	}
-	return ohms, &tolerance, nil
+	return resistance.marked(text, q, "ohm")
+}
+
+// mayGroupOhms reports whether the separator at q.pointAt may group thousands. A
+// prefix rules that out: the trade writes 4.7M, not 4,700k. So does 4.682 Ω, as
+// meters and this package print it: no resistor is marked with four digits.
+func mayGroupOhms(text string, q quantity) bool {
+	return q.prefix == 0 && !(q.unit && text[q.pointAt] == '.' && !strings.HasSuffix(q.digits, "0"))
 }
 
 // threeDigitResistor refuses three digits with a tolerance letter: 104J is

@@ -15,6 +15,7 @@ type family struct {
 	prefixes string // accepted prefixes, a subset of those in powers
 	points   string // unit letters that may stand as the decimal point
 	signed   bool   // may be negative
+	nought   bool   // may be 0
 	power    int    // of ten that the unit stands for
 	min, max float64
 	limits   string // min and max for people
@@ -125,10 +126,9 @@ func (f *family) stray(text string, q quantity) error {
 func (f *family) value(text string, q quantity) (float64, error) {
 	x := q.float()
 	switch {
+	case q.zero() && !f.nought:
+		return 0, errorAt(text, q.at, "%s of 0 %s is not possible", f.noun, f.symbol)
 	case q.zero():
-		if f.min > 0 {
-			return 0, errorAt(text, q.at, "%s of 0 %s is not possible", f.noun, f.symbol)
-		}
 		return 0, nil
 	case math.IsInf(x, 0) || x > f.max || x < f.min || x == 0:
 		return 0, errorAt(text, q.at, "%s of %s %s is out of reason (%s); m is milli and M is mega, always", f.noun, scientific(x), f.symbol, f.limits)
@@ -139,15 +139,33 @@ func (f *family) value(text string, q quantity) (float64, error) {
 	return x, nil
 }
 
+// marked returns the value of the quantity, and the tolerance where its letter is
+// all that follows a prefix or a unit.
+func (f *family) marked(text string, q quantity, unit string) (float64, *Tolerance, error) {
+	lettered := len(q.rest) == 1 && strings.Contains(toleranceLetters, q.rest) && (q.unit || q.prefix != 0)
+	if q.rest != "" && !lettered {
+		return 0, nil, f.stray(text, q)
+	}
+	x, err := f.value(text, q)
+	if err != nil || !lettered {
+		return x, nil, err
+	}
+	tolerance, err := letterTolerance(text, q.restAt, q.rest[0], x, unit)
+	if err != nil {
+		return 0, nil, err
+	}
+	return x, &tolerance, nil
+}
+
 // thousands returns the error about a separator that may be a decimal point or
-// may group thousands, both readings written by format.
-func thousands(text string, q quantity, format, compact func(float64) string) error {
+// may group thousands, both readings as format shows them and as compact writes
+// them.
+func thousands(text string, d decimal, format, compact func(float64) string) error {
 	name := "comma"
-	if text[q.pointAt] == '.' {
+	if text[d.pointAt] == '.' {
 		name = "point"
 	}
-	small := q.float()
-	large := q.scaled(3).float()
-	return errorAt(text, q.pointAt, "%s could be %s (decimal %s) or %s (%s between thousands); write %s or %s",
-		q.written, format(small), name, format(large), name, compact(small), compact(large))
+	small, large := d.float(), d.scaled(3).float()
+	return errorAt(text, d.pointAt, "%s could be %s (decimal %s) or %s (%s between thousands); write %s or %s",
+		d.written, format(small), name, format(large), name, compact(small), compact(large))
 }

@@ -2,6 +2,7 @@ package marking
 
 import (
 	"math"
+	"slices"
 	"strings"
 )
 
@@ -32,6 +33,9 @@ const toleranceLetters = "BCDEFGHJKLMNPQSTWZ"
 const (
 	tenPicofarads = 10e-12
 	largestPlus   = 3 // +300 %
+	// Up to here a bare number may be a fraction: 0.3 is 30 % (letter N). 0.25 is
+	// not: no tolerance is 25 %, while 0.25 % has a letter.
+	largestUnclear = 0.3
 )
 
 // ParseTolerance returns the tolerance that the text writes for a part of the
@@ -77,7 +81,6 @@ func FormatTolerance(t Tolerance) string {
 
 // letterTolerance returns the tolerance of the letter at the offset.
 func letterTolerance(text string, at int, letter byte, value float64, unit string) (Tolerance, error) {
-	percent := func(written string) float64 { return decimalOf(written).scaled(-2).float() }
 	if unit == "f" && value < tenPicofarads {
 		if deviation, found := picofarads[letter]; found {
 			fraction := decimalOf(deviation).scaled(-12).float() / value
@@ -94,7 +97,7 @@ func letterTolerance(text string, at int, letter byte, value float64, unit strin
 		return Tolerance{}, errorAt(text, at, "P is ±0.02 %% on some charts and −0/+100 %% on others; write ±0.02%% or +100-0%%")
 	}
 	t := letters[letter]
-	return Tolerance{percent(t.minus), percent(t.plus)}, nil
+	return Tolerance{decimalOf(t.minus).scaled(-2).float(), decimalOf(t.plus).scaled(-2).float()}, nil
 }
 
 // decimalOf returns a constant of this package as a decimal.
@@ -106,18 +109,11 @@ func decimalOf(written string) decimal {
 	return d
 }
 
-// deviation is one written side of a tolerance.
-type deviation struct {
-	quantity
-	absolute bool // in the value's unit
-	percent  bool // % is written
-}
-
 // deviations reads one deviation for both sides, or one with + and one with −
 // in either order.
 func deviations(r *reader, value float64, unit string) (Tolerance, error) {
 	text := r.text
-	start := r.at
+	firstAt := r.at
 	sign := r.sign()
 	first, err := readDeviation(r, unit)
 	if err != nil {
@@ -127,7 +123,7 @@ func deviations(r *reader, value float64, unit string) (Tolerance, error) {
 		if !r.end() {
 			return Tolerance{}, errorAt(text, r.at, "%s does not belong after a tolerance; write it as ±5%%, +80-20%% or J", characterAt(text, r.at))
 		}
-		fraction, err := first.fraction(text, value, false)
+		fraction, err := first.fraction(text, value)
 		return Tolerance{fraction, fraction}, err
 	}
 	r.space()
@@ -140,23 +136,21 @@ func deviations(r *reader, value float64, unit string) (Tolerance, error) {
 		return Tolerance{}, errorAt(text, secondAt, "only one side of the tolerance is written; write both as +80-20%%, or one for both as ±5%%")
 	}
 	second, err := readDeviation(r, unit)
-	if err != nil {
+	switch {
+	case err != nil:
 		return Tolerance{}, err
-	}
-	if !r.end() {
+	case !r.end():
 		return Tolerance{}, errorAt(text, r.at, "%s does not belong after a tolerance; write it as +80-20%%", characterAt(text, r.at))
+	case first.in == bare && second.in == percent:
+		first.in = percent // +80-20%
+	case first.in != second.in:
+		return Tolerance{}, errorAt(text, firstAt, "the two sides of the tolerance are in different units; write both in percent as +80-20%%")
 	}
-	if !first.percent && !first.absolute {
-		first.percent, first.absolute = second.percent, second.absolute && false
-	}
-	if first.percent != second.percent || first.absolute != second.absolute {
-		return Tolerance{}, errorAt(text, start, "the two sides of the tolerance are in different units; write both in percent as +80-20%%")
-	}
-	a, err := first.fraction(text, value, true)
+	a, err := first.fraction(text, value)
 	if err != nil {
 		return Tolerance{}, err
 	}
-	b, err := second.fraction(text, value, true)
+	b, err := second.fraction(text, value)
 	if err != nil {
 		return Tolerance{}, err
 	}
@@ -190,52 +184,64 @@ func (r *reader) sign() side {
 	return none
 }
 
+// scale is what a deviation is written in.
+type scale int
+
+const (
+	bare scale = iota
+	percent
+	absolute // in the value's unit
+)
+
+// deviation is one written side of a tolerance.
+type deviation struct {
+	decimal
+	in scale
+}
+
 // readDeviation reads a number with % or the unit.
 func readDeviation(r *reader, unit string) (deviation, error) {
-	var d deviation
 	number, err := r.number("a tolerance such as 5%, ±0.25pF or J")
 	if err != nil {
-		return d, err
+		return deviation{}, err
 	}
-	d.decimal = number
 	r.space()
 	if r.take("%") {
-		d.percent = true
-		return d, nil
+		return deviation{number, percent}, nil
 	}
 	f := map[string]*family{"ohm": &resistance, "f": &capacitance}[unit]
 	if f == nil {
-		return d, nil
+		return deviation{number, bare}, nil
 	}
-	if c := r.next(); c != 0 && strings.ContainsRune(f.prefixes, c) {
-		d.decimal = d.scaled(powers[c])
-		d.absolute = true
-		r.at += len(string(c))
+	prefixAt := r.at
+	prefix := r.next()
+	if prefix != 0 && strings.ContainsRune(f.prefixes, prefix) {
+		number = number.scaled(powers[prefix])
+		r.at += len(string(prefix))
 		r.space()
+	} else {
+		prefix = 0
 	}
-	for _, u := range f.units {
-		if r.take(u) {
-			d.absolute = true
-			break
-		}
+	switch {
+	case slices.ContainsFunc(f.units, r.take):
+		return deviation{number, absolute}, nil
+	case prefix != 0:
+		return deviation{}, errorAt(r.text, prefixAt, "%s after a tolerance needs a unit; write it in percent as 5%%, or with its unit as ±0.25pF", characterAt(r.text, prefixAt))
 	}
-	return d, nil
+	return deviation{number, bare}, nil
 }
 
-// fraction returns the deviation as a fraction of the value. The second of two
-// sides is never a bare fraction.
-func (d deviation) fraction(text string, value float64, sided bool) (float64, error) {
-	if d.absolute {
-		if value == 0 {
-			return 0, errorAt(text, d.at, "an absolute tolerance needs a value other than 0")
-		}
-		return d.float() / value, nil
-	}
+// fraction returns the deviation as a fraction of the value.
+func (d deviation) fraction(text string, value float64) (float64, error) {
 	x := d.float()
-	if math.IsInf(x, 0) {
-		return 0, errorAt(text, d.at, "a tolerance of more than 1e308 %% is out of reason")
-	}
-	if !d.percent && !sided && x > 0 && x <= 0.3 && x != 0.25 {
+	switch {
+	case math.IsInf(x, 0):
+		return 0, errorAt(text, d.at, "a tolerance of more than 1e308 is out of reason")
+	case d.in == absolute && value == 0:
+		return 0, errorAt(text, d.at, "an absolute tolerance needs a value other than 0; write it in percent")
+	case d.in == absolute:
+		return x / value, nil
+	case d.in == bare && x > 0 && x <= largestUnclear && x != 0.25:
 		return 0, errorAt(text, d.at, "%s could be %s or, as a fraction, %s; write the percent sign", d.written, FormatPercent(x/100), FormatPercent(x))
 	}
 	return d.scaled(-2).float(), nil
