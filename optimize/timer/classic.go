@@ -10,6 +10,7 @@ var classic = Circuit{
 	Phases:     classicPhases,
 	FirstHighS: classicFirstHighS,
 	Stalls:     classicStalls,
+	wire:       classicWire,
 }
 
 // classicPhases returns, for the ideal timer, HighS = ln2 (RA+RB) C and
@@ -32,4 +33,11 @@ func classicStalls(c *Conditions, v *Values) string {
 	return noOscillation(
 		stallsCharging(c, "ra and rb charge the capacitor", c.SupplyV),
 		stallsDischarging(c, "the discharge pin, with ra pulling up against it, takes the capacitor", vth))
+}
+
+func classicWire(n *netlist) {
+	n.timer("cap", "cap", "dis")
+	n.resistor("ra", "vcc", "dis")
+	n.resistor("rb", "dis", "cap")
+	n.capacitor(0)
 }

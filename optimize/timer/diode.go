@@ -65,18 +65,30 @@ func solveW(p, q, drop float64) float64 {
 	return max(w, 0)
 }
 
-// blockingW is how many slopes of reverse voltage make a diode pass its
-// saturation current and no less: exp(-14) is below 1e-6.
+// blockingW bounds the error of taking a blocking diode's current as IS: with x
+// slopes of reverse voltage it is IS (1 - exp(-x)), beside (exp(w)) IS that the
+// conducting diode passes with it, so the relative error is exp(-(x + w)); below
+// exp(-14), a millionth.
 const blockingW = 14
 
+// blocks reports whether the reverse biased diode behind other ohm passes its
+// saturation current, to a millionth of all that flows, while drop remains and
+// the conducting diode is at w.
+func (d junction) blocks(other, drop, w float64) bool {
+	return (drop-d.saturationA*other)/d.slopeV+w >= blockingW
+}
+
 // seriesRampS returns the time in which the voltage between a source and the
-// capacitor falls from drop0 to drop1 while the source drives it through
-// source ohm, then r and a diode, s; +Inf where drop1 is not positive. A like
-// diode behind other ohm is reverse biased all the while and passes its
-// saturation current IS. With w = ln(1 + i/IS) the law drop = i R + slope w turns
-// t = C ∫ dv/(i + IS) into
+// capacitor falls from drop0 to drop1 while the source drives it through source
+// ohm and from there through r and a diode, s; +Inf where drop1 is not positive.
+// A like diode the other way round, behind other ohm, is reverse biased all the
+// while and passes its saturation current IS. With w = ln(1 + i/IS) the law
+// drop = i R + slope w turns t = C ∫ dv/(i + IS) into
 //
 //	t = C [ R (w0 - w1) + slope/IS (exp(-w1) - exp(-w0)) ]
+//
+// Where the voltage is too small to block the other diode the law is integrated
+// with both solved.
 func (d junction) seriesRampS(r, other, source, farads, drop0, drop1 float64) float64 {
 	if drop1 <= 0 {
 		return math.Inf(1)
@@ -86,10 +98,60 @@ func (d junction) seriesRampS(r, other, source, farads, drop0, drop1 float64) fl
 		return r * farads * math.Log(drop0/drop1)
 	}
 	r += d.seriesOhm
+	other += source + d.seriesOhm
 	p := r * d.saturationA
 	w0, w1 := solveW(p, d.slopeV, drop0), solveW(p, d.slopeV, drop1)
+	if !d.blocks(other, drop1, w1) {
+		return farads * d.leakyOhm(r, other, w0, w1)
+	}
+	shared := d.saturationA * source // that the leakage drops on the source's own resistance
+	if shared > 0 && shared < drop1 {
+		w0 -= shared / (p*math.Exp(w0) + d.slopeV)
+		w1 -= shared / (p*math.Exp(w1) + d.slopeV)
+	}
 	return farads * (r*(w0-w1) + d.slopeV/d.saturationA*(math.Exp(-w1)-math.Exp(-w0)))
 }
+
+// leakyOhm returns ∫ dv/i for seriesRampS with the reverse biased diode's
+// current solved at every voltage, ohm.
+func (d junction) leakyOhm(r, other, w0, w1 float64) float64 {
+	sum := 0.0
+	for low := w1; low < w0; {
+		high := panelEnd(low, w0)
+		middle, half := (high+low)/2, (high-low)/2
+		for i, node := range legendreNodes {
+			for _, w := range [2]float64{middle - half*node, middle + half*node} {
+				grown := d.saturationA * math.Expm1(w)
+				slope := r*(grown+d.saturationA) + d.slopeV
+				sum += half * legendreWeights[i] * slope / (grown + d.reverseA(other, r*grown+d.slopeV*w))
+			}
+		}
+		low = high
+	}
+	return sum
+}
+
+// reverseA returns the current that drop drives through r and the reverse biased
+// diode, A. With x slopes of reverse voltage, r IS (1-exp(-x)) + slope x = drop:
+// concave and rising, so Newton's steps climb to the root and never pass it.
+func (d junction) reverseA(r, drop float64) float64 {
+	most := r * d.saturationA
+	x := max((drop-most)/d.slopeV, drop/(most+d.slopeV))
+	for range 60 {
+		passed := -math.Expm1(-x)
+		step := (drop - most*passed - d.slopeV*x) / (most*(1-passed) + d.slopeV)
+		x += step
+		if step <= 1e-12*x {
+			break
+		}
+	}
+	return d.saturationA * -math.Expm1(-x)
+}
+
+// panelEnd returns where the panel of a quadrature over w that begins at low
+// ends. The integrands turn over within a few units of w and are like 1/w near
+// zero, so a panel spans three units and a threefold rise at most.
+func panelEnd(low, end float64) float64 { return min(end, low+3, 3*low) }
 
 // bypassRampS returns the time in which the voltage between the supply and the
 // capacitor falls from drop0 to drop1 while the supply drives it through ra and
@@ -116,12 +178,11 @@ func (d junction) bypassA(rb, w float64) float64 {
 
 // bypassOhm returns ∫ du/i from w1 to w0 over the voltage u on the diode and rb,
 // ohm: ∫ (seriesOhm IS exp(w) + slope)/i(w) dw, by Gauss and Legendre's rule of
-// six points. The integrand turns over within a few units of w and is 1/w near
-// zero, so a panel spans at most three units and at most a threefold rise.
+// six points a panel.
 func (d junction) bypassOhm(rb, w0, w1 float64) float64 {
 	sum := 0.0
 	for low := w1; low < w0; {
-		high := min(w0, low+3, 3*low)
+		high := panelEnd(low, w0)
 		middle, half := (high+low)/2, (high-low)/2
 		for i, node := range legendreNodes {
 			for _, w := range [2]float64{middle - half*node, middle + half*node} {

@@ -24,6 +24,10 @@ var diodeBypass = Circuit{
 		d := v.Diode.at(c.AmbientC)
 		return d.bypassRampS(v.Ohms[0], v.Ohms[1], v.Farads, c.SupplyV, c.SupplyV-c.HighLevelV)
 	},
+	wire: func(n *netlist) {
+		classicWire(n)
+		n.diode("dis", "cap")
+	},
 	Stalls: func(c *Conditions, v *Values) string {
 		d := v.Diode.at(c.AmbientC)
 		vth, _ := pulledDown(c, v.Ohms[0], v.Ohms[1], 0)

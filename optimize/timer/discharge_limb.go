@@ -22,6 +22,13 @@ var dischargeLimb = Circuit{
 		}
 	},
 	FirstHighS: classicFirstHighS,
+	wire: func(n *netlist) {
+		n.timer("cap", "cap", "dis")
+		n.resistor("ra", "vcc", "junction")
+		n.resistor("rb", "junction", "cap")
+		n.resistor("rd", "junction", "dis")
+		n.capacitor(0)
+	},
 	Stalls: func(c *Conditions, v *Values) string {
 		vth, _ := pulledDown(c, v.Ohms[0], v.Ohms[1], v.Ohms[2])
 		low := stallsDischarging(c, "rd and the discharge pin, with ra pulling up against them, take the capacitor", vth)

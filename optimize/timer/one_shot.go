@@ -15,6 +15,12 @@ var oneShot = Circuit{
 	},
 	FirstHighS: func(*Conditions, *Values) float64 { return 0 },
 	Stalls:     pulseStalls,
+	wire: func(n *netlist) {
+		n.timer("trigger", "cap", "cap")
+		n.trigger("trigger")
+		n.resistor("r", "vcc", "cap")
+		n.capacitor(0)
+	},
 }
 
 // pulseS returns how long R takes to charge the capacitor from startV to the

@@ -21,6 +21,11 @@ var outputFed = Circuit{
 		return rampS(c.OutHighV, v.Ohms[0]+c.OutHighOhm, v.Farads, 0, c.HighLevelV)
 	},
 	Stalls: outputFedStalls,
+	wire: func(n *netlist) {
+		n.timer("cap", "cap", "dis")
+		n.resistor("r", "out", "cap")
+		n.capacitor(0)
+	},
 }
 
 func outputFedStalls(c *Conditions, _ *Values) string {

@@ -21,4 +21,12 @@ var outputFedSplit = Circuit{
 		return d.seriesRampS(v.Ohms[0], v.Ohms[1], c.OutHighOhm, v.Farads, c.OutHighV, c.OutHighV-c.HighLevelV)
 	},
 	Stalls: outputFedStalls,
+	wire: func(n *netlist) {
+		n.timer("cap", "cap", "dis")
+		n.diode("out", "charge")
+		n.resistor("rh", "charge", "cap")
+		n.resistor("rl", "cap", "discharge")
+		n.diode("discharge", "out")
+		n.capacitor(0)
+	},
 }

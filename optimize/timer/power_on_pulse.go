@@ -4,12 +4,17 @@ package timer
 // empty: trigger and threshold follow the capacitor, the discharge pin is not
 // used. PulseS is HighS, ln3 R C for the ideal timer.
 var powerOnPulse = Circuit{
-	Slug:       "power-on-pulse",
-	Title:      "one pulse at power-up",
-	Resistors:  []string{"r"},
-	OneShot:    true,
-	HighTrend:  Trend{+1},
-	Phases:     func(c *Conditions, v *Values) Phases { return Phases{HighS: pulseS(c, v, 0)} },
+	Slug:      "power-on-pulse",
+	Title:     "one pulse at power-up",
+	Resistors: []string{"r"},
+	OneShot:   true,
+	HighTrend: Trend{+1},
+	Phases:    func(c *Conditions, v *Values) Phases { return Phases{HighS: pulseS(c, v, 0)} },
+	wire: func(n *netlist) {
+		n.timer("cap", "cap", "dis")
+		n.resistor("r", "vcc", "cap")
+		n.capacitor(0)
+	},
 	FirstHighS: func(*Conditions, *Values) float64 { return 0 },
 	Stalls:     pulseStalls,
 }
