@@ -9,9 +9,9 @@ import (
 	"tickdrawer/inventory/marking"
 )
 
-// NewRequirements returns the requirements sorted by measure. The error is that
+// NewRequirements returns a copy of the requirements sorted by measure. The error is that
 // of CheckRequirements.
-func NewRequirements(requirements ...Requirement) ([]Requirement, error) {
+func NewRequirements(requirements []Requirement) ([]Requirement, error) {
 	sorted := slices.SortedStableFunc(slices.Values(requirements), func(a, b Requirement) int { return int(a.Measure - b.Measure) })
 	if err := CheckRequirements(sorted); err != nil {
 		return nil, err

@@ -20,7 +20,7 @@ type step struct {
 // in micro up to 0.1 F (4700 µF, not 4.7 mF), times with none above 1 s. Common
 // practice, no source.
 var (
-	ohmSteps   = []step{{"T", 12, 12}, {"G", 9, 9}, {"M", 6, 6}, {"k", 3, 3}, {"", 0, -1}, {"m", -3, -3}, {"µ", -6, -6}}
+	ohmSteps   = []step{{"T", 12, 12}, {"G", 9, 9}, {"M", 6, 6}, {"k", 3, 3}, {"", 0, -1}, {"m", -3, -3}}
 	faradSteps = []step{{"", 0, -1}, {"µ", -6, -6}, {"n", -9, -9}, {"p", -12, -12}}
 	timeSteps  = []step{{"", 0, 0}, {"m", -3, -3}, {"µ", -6, -6}, {"n", -9, -9}, {"p", -12, -12}}
 	plainSteps = []step{{"G", 9, 9}, {"M", 6, 6}, {"k", 3, 3}, {"", 0, 0}, {"m", -3, -3}, {"µ", -6, -6}, {"n", -9, -9}, {"p", -12, -12}}
