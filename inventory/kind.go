@@ -94,35 +94,46 @@ func ParseKind(word string) (Kind, error) {
 	return "", Errorf(Invalid, "kind: %q is no kind of component; the kinds are %s", word, kindWords())
 }
 
-// nearestKind returns the kind whose name is the fewest edits away from the
-// word, at most a third of its letters.
+// nearestKind returns the kind whose name is the fewest mistypings away from the
+// word: at most two, and one in a short word.
 func nearestKind(word string) (nearest Kind, found bool) {
-	fewest := len(word)/3 + 1
+	if len(word) > 2*len(Potentiometer) {
+		return "", false
+	}
+	fewest := 3
+	if len(word) < len("timers") {
+		fewest = 2
+	}
 	for _, k := range Kinds() {
-		if n := min(edits(word, string(k)), edits(word, string(k)+"s")); n < fewest {
+		if n := min(mistypings(word, string(k)), mistypings(word, string(k)+"s")); n < fewest {
 			nearest, fewest, found = k, n, true
 		}
 	}
 	return nearest, found
 }
 
-// edits returns the Levenshtein distance of two texts in bytes.
-func edits(a, b string) int {
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
+// mistypings returns how many bytes must be put in, left out, replaced or
+// swapped with their neighbour to make b of a (optimal string alignment).
+func mistypings(a, b string) int {
+	distance := make([][]int, len(a)+1)
+	for i := range distance {
+		distance[i] = make([]int, len(b)+1)
+		distance[i][0] = i
 	}
-	for i := range len(a) {
-		diagonal := row[0]
-		row[0] = i + 1
-		for j := range len(b) {
-			substituted := diagonal
-			if a[i] != b[j] {
-				substituted++
+	for j := range distance[0] {
+		distance[0][j] = j
+	}
+	for i := 1; i <= len(a); i++ {
+		for j := 1; j <= len(b); j++ {
+			replaced := distance[i-1][j-1]
+			if a[i-1] != b[j-1] {
+				replaced++
 			}
-			diagonal = row[j+1]
-			row[j+1] = min(substituted, row[j]+1, row[j+1]+1)
+			distance[i][j] = min(replaced, distance[i-1][j]+1, distance[i][j-1]+1)
+			if i > 1 && j > 1 && a[i-1] == b[j-2] && a[i-2] == b[j-1] {
+				distance[i][j] = min(distance[i][j], distance[i-2][j-2]+1)
+			}
 		}
 	}
-	return row[len(b)]
+	return distance[len(a)][len(b)]
 }

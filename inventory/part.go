@@ -128,7 +128,8 @@ func (p Part) checkTexts() error {
 	for _, text := range []struct{ field, written string }{
 		{"part_number", p.PartNumber}, {"dielectric", p.Dielectric}, {"package", p.Package},
 	} {
-		if !utf8.ValidString(text.written) || strings.ContainsFunc(text.written, unicode.IsControl) {
+		// Upper case has made U+FFFD of a byte outside UTF-8.
+		if strings.ContainsRune(text.written, utf8.RuneError) || strings.ContainsFunc(text.written, unicode.IsControl) {
 			return Errorf(Invalid, "%s: %q holds characters that do not print; write it again", text.field, text.written)
 		}
 	}
