@@ -35,7 +35,7 @@ func cut(text string, from, to int) piece {
 	return piece{text, to - len(written), strings.TrimRightFunc(written, unicode.IsSpace)}
 }
 
-func (p piece) percent() bool { return strings.HasSuffix(p.written, "%") }
+func (p piece) percent() bool { return strings.Contains(p.written, "%") }
 
 // errorf returns an error that points at the piece.
 func (p piece) errorf(format string, args ...any) error {

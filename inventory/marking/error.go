@@ -13,6 +13,18 @@ type Error struct {
 	Message string // what is wrong there and what to do
 }
 
+// longestText is the most bytes that a quantity is written in.
+const longestText = 100
+
+// checkLength refuses a text that is no quantity by its length alone, so that
+// messages stay short.
+func checkLength(text string) error {
+	if len(text) <= longestText {
+		return nil
+	}
+	return errorAt(text, longestText, "the text goes on for %d bytes, too long for a quantity", len(text))
+}
+
 // longestQuote is the most characters of a text that a message repeats.
 const longestQuote = 40
 

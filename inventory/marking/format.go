@@ -16,14 +16,15 @@ type step struct {
 	from   int // used for values from 10^from on
 }
 
-// The prefixes that the trade writes, descending: 0.47 Ω without one, capacitance
-// in micro up to 0.1 F (4700 µF, not 4.7 mF), times with none above 1 s. Common
-// practice, no source.
+// The prefixes that the trade writes, descending: none for 0.47 Ω, 0.25 Hz and
+// times above 1 s, micro for capacitance up to 0.1 F (4700 µF, not 4.7 mF).
+// Common practice, no source.
 var (
 	ohmSteps   = []step{{"T", 12, 12}, {"G", 9, 9}, {"M", 6, 6}, {"k", 3, 3}, {"", 0, -1}, {"m", -3, -3}}
 	faradSteps = []step{{"", 0, -1}, {"µ", -6, -6}, {"n", -9, -9}, {"p", -12, -12}}
 	timeSteps  = []step{{"", 0, 0}, {"m", -3, -3}, {"µ", -6, -6}, {"n", -9, -9}, {"p", -12, -12}}
 	plainSteps = []step{{"G", 9, 9}, {"M", 6, 6}, {"k", 3, 3}, {"", 0, 0}, {"m", -3, -3}, {"µ", -6, -6}, {"n", -9, -9}, {"p", -12, -12}}
+	hertzSteps = []step{{"G", 9, 9}, {"M", 6, 6}, {"k", 3, 3}, {"", 0, -2}, {"m", -3, -3}, {"µ", -6, -6}, {"n", -9, -9}}
 	noSteps    = []step{{"", 0, 0}}
 )
 
@@ -37,8 +38,9 @@ func FormatFarads(farads float64) string { return engineering(farads, faradSteps
 // FormatSeconds returns a time (s) for people: "3.98 s", "221.8 µs".
 func FormatSeconds(seconds float64) string { return engineering(seconds, timeSteps, "s") }
 
-// FormatHertz returns a frequency (Hz) for people: "421.3 Hz", "1.2 kHz".
-func FormatHertz(hertz float64) string { return engineering(hertz, plainSteps, "Hz") }
+// FormatHertz returns a frequency (Hz) for people: "421.3 Hz", "1.2 kHz",
+// "0.25 Hz".
+func FormatHertz(hertz float64) string { return engineering(hertz, hertzSteps, "Hz") }
 
 // FormatVolts returns a voltage (V) for people: "9 V", "700 mV".
 func FormatVolts(volts float64) string { return engineering(volts, plainSteps, "V") }

@@ -10,7 +10,7 @@ import (
 func checkFailure(t *testing.T, text string, err error) {
 	t.Helper()
 	var e *Error
-	if !errors.As(err, &e) || e.Text != text || e.Column < 1 || e.Column > len(text)+1 || e.Message == "" {
+	if !errors.As(err, &e) || e.Text != text || e.Column < 1 || e.Column > len(text)+1 || e.Message == "" || len(e.Error()) > 1000 {
 		t.Fatalf("%q: unsound error %#v", text, err)
 	}
 }

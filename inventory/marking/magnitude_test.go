@@ -65,7 +65,7 @@ func TestValuesAreWrittenForPeople(t *testing.T) {
 		{FormatOhms(4700), "4.7 kΩ"}, {FormatOhms(0), "0 Ω"}, {FormatOhms(0.47), "0.47 Ω"}, {FormatOhms(0.047), "47 mΩ"}, {FormatOhms(999.96), "1 kΩ"}, {FormatOhms(12346), "12.35 kΩ"}, {FormatOhms(0.0005), "0.5 mΩ"}, {FormatOhms(2.2e6), "2.2 MΩ"}, {FormatOhms(1e12), "1 TΩ"},
 		{FormatFarads(1e-7), "100 nF"}, {FormatFarads(4.7e-6), "4.7 µF"}, {FormatFarads(4.7e-3), "4700 µF"}, {FormatFarads(0.022), "22000 µF"}, {FormatFarads(0.1), "0.1 F"}, {FormatFarads(0.5e-12), "0.5 pF"}, {FormatFarads(0.0999999), "0.1 F"},
 		{FormatSeconds(3.98), "3.98 s"}, {FormatSeconds(221.806e-6), "221.8 µs"}, {FormatSeconds(0.5), "500 ms"}, {FormatSeconds(86400), "86400 s"}, {FormatSeconds(86412.4), "86412 s"}, {FormatSeconds(0.99999), "1 s"},
-		{FormatHertz(421.3), "421.3 Hz"}, {FormatHertz(1200), "1.2 kHz"},
+		{FormatHertz(421.3), "421.3 Hz"}, {FormatHertz(1200), "1.2 kHz"}, {FormatHertz(0.25), "0.25 Hz"}, {FormatHertz(0.005), "5 mHz"},
 		{FormatVolts(9), "9 V"}, {FormatVolts(0.7), "700 mV"}, {FormatAmperes(0.01), "10 mA"}, {FormatWatts(0.25), "250 mW"},
 		{FormatCelsius(25), "25 °C"}, {FormatCelsius(-10), "−10 °C"}, {FormatPercent(0.483), "48.3 %"}, {FormatPercent(0.07), "7 %"}, {FormatPercent(1e-9), "0.0000001 %"},
 		{FormatSeconds(math.Inf(1)), "∞ s"}, {FormatSeconds(math.NaN()), "unknown"},

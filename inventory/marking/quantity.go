@@ -45,6 +45,9 @@ type quantity struct {
 // space between them, or a letter as the decimal point. What follows is left in
 // rest.
 func (f *family) read(text string) (quantity, error) {
+	if err := checkLength(text); err != nil {
+		return quantity{}, err
+	}
 	r := &reader{text: text}
 	if r.end() {
 		return quantity{}, errorAt(text, r.at, "nothing is written; write %s such as %s", f.noun, f.sample)

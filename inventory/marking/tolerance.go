@@ -48,6 +48,9 @@ const (
 // two readings: a bare number up to 0.3 may be a percentage or a fraction, and
 // charts disagree on the letter P.
 func ParseTolerance(text string, value float64, unit string) (Tolerance, error) {
+	if err := checkLength(text); err != nil {
+		return Tolerance{}, err
+	}
 	r := &reader{text: text}
 	if r.end() {
 		return Tolerance{}, errorAt(text, r.at, "nothing is written; write a tolerance such as 5%% or J")

@@ -101,6 +101,7 @@ func TestResistancesAreRefusedWithTheReason(t *testing.T) {
 		{"+4k7", 1, []string{`"+"`}},
 		{"k", 1, []string{`"k"`, "digit"}},
 		{"R", 1, []string{`"R"`}},
+		{strings.Repeat("1", 5000), 101, []string{"5000 bytes"}},
 		{"NaN", 1, []string{`"N"`}},
 		{"Inf", 1, []string{`"I"`}},
 		{"1e+13", 1, []string{"1e+13", "out of reason"}},
