@@ -48,6 +48,7 @@ type walk struct {
 	high    timer.Values
 	tables  [timer.MaxResistors]*network.Table // of this class, by position
 	farads  *network.Table
+	windows windows // of the limit last asked for
 	at      candidate
 	pieces  []int32 // scratch
 	visited int
@@ -108,7 +109,7 @@ func (s *stage) run(ctx context.Context, into collector) bool {
 		return cmp.Compare(a.class.total+a.setup.parts, b.class.total+b.setup.parts)
 	})
 	for _, work := range works {
-		w := walk{stage: s, setup: work.setup, ctx: ctx, into: into}
+		w := walk{stage: s, setup: work.setup, ctx: ctx, into: into, windows: windows{share: math.NaN()}}
 		if !w.search(work.class) {
 			return false
 		}
@@ -156,7 +157,7 @@ func (w *walk) descend(depth int, table *network.Table, others inventory.Micros,
 		return
 	}
 	limit := w.into.limit(w.at.parts, others+table.CheapestIn(span))
-	if limit < 0 || w.leastUsed() > limit+tie {
+	if limit < 0 || w.hopeless(limit) {
 		return
 	}
 	if to-from == 1 {
@@ -257,53 +258,14 @@ func (w *walk) enough() bool {
 	return true
 }
 
-// outward is by how much a bound is widened, relative: well above the rounding
-// of a phase time.
-const outward = 1e-12
-
-// span is a lower and an upper bound.
-type span struct{ low, high float64 }
-
-func (s span) outward() span { return span{s.low * (1 - outward), s.high * (1 + outward)} }
-
-// leastUsed returns a share of the allowance that every fit in the box uses at
-// least.
-func (w *walk) leastUsed() float64 {
+// hopeless reports whether no fit in the box uses at most the share of the
+// allowance.
+func (w *walk) hopeless(share float64) bool {
+	if share != w.windows.share {
+		w.windows = windowsAt(&w.spec, share)
+	}
 	high, low := w.phaseSpans()
-	worst := 0.0
-	for _, r := range w.spec.Requirements {
-		within := measureSpan(r.Measure, high, low)
-		if within.low > r.Target {
-			worst = max(worst, r.Used(within.low))
-		} else if within.high < r.Target {
-			worst = max(worst, r.Used(within.high))
-		} else if !(within.low <= within.high) {
-			return math.Inf(1)
-		}
-	}
-	return worst
-}
-
-// measureSpan returns the bounds of a measure over independent bounds of the
-// phases.
-func measureSpan(m optimize.Measure, high, low span) span {
-	var s span
-	switch m {
-	case optimize.Low:
-		s = low
-	case optimize.Period:
-		s = span{high.low + low.low, high.high + low.high}
-	case optimize.Frequency:
-		s = span{1 / (high.high + low.high), 1 / (high.low + low.low)}
-	case optimize.Duty:
-		s = span{high.low / (high.low + low.high), 1}
-		if !math.IsInf(high.high, 1) {
-			s.high = high.high / (high.high + low.low)
-		}
-	default: // High, and Pulse, which is a high time too
-		s = high
-	}
-	return s.outward()
+	return w.windows.misses(high, low, w.circuit.OneShot)
 }
 
 // phaseSpans returns the bounds of the two phases over the box, from the corners
