@@ -45,12 +45,6 @@ func (e *JobError) Error() string {
 type scalar string
 
 func (s *scalar) UnmarshalYAML(node ast.Node) error {
-	if tag, ok := node.(*ast.TagNode); ok {
-		return positioned(tag, "tags are not read: write the value alone")
-	}
-	if anchor, ok := node.(*ast.AnchorNode); ok {
-		node = anchor.Value
-	}
 	switch node := node.(type) {
 	case *ast.StringNode:
 		*s = scalar(node.Value)
@@ -150,30 +144,43 @@ func ParseJob(name string, content []byte) (ParsedJob, error) {
 	if len(content) > maxJobBytes {
 		return ParsedJob{}, &JobError{File: name, Message: fmt.Sprintf("larger than %d bytes: this is no job file", maxJobBytes)}
 	}
-	tree, err := parser.ParseBytes(content, 0)
+	tree, file, err := decode(name, content)
 	if err != nil {
-		return ParsedJob{}, yamlError(name, err)
+		return ParsedJob{}, err
 	}
 	r := reader{name: name, tree: tree}
-	if len(tree.Docs) == 0 || tree.Docs[0].Body == nil {
-		return ParsedJob{}, r.errorf("", "the file is empty: a job needs job, boards and stages")
-	}
-	if len(tree.Docs) > 1 {
-		return ParsedJob{}, r.errorf("", "the file holds %d documents: one job a file", len(tree.Docs))
-	}
-	// Aliases can make a small file expand without end; no job needs them.
-	for _, doc := range tree.Docs {
-		for _, alias := range ast.Filter(ast.AliasType, doc.Body) {
-			at := alias.GetToken().Position
-			return ParsedJob{}, &JobError{name, at.Line, at.Column, "aliases are not read: write the value out"}
-		}
-	}
-	var file jobFile
-	if err := yaml.UnmarshalWithOptions(content, &file, yaml.Strict()); err != nil {
-		return ParsedJob{}, yamlError(name, err)
-	}
 	job, err := r.job(file)
 	return ParsedJob{Job: job, BOM: string(file.BOM)}, err
+}
+
+// decode returns the file's tree and its content.
+func decode(name string, content []byte) (tree *ast.File, file jobFile, err error) {
+	defer func() {
+		// The library has panicked on broken documents; a person sees a sentence.
+		if recover() != nil {
+			err = &JobError{File: name, Message: "this is no YAML that can be read: check the indents and the dashes"}
+		}
+	}()
+	if tree, err = parser.ParseBytes(content, 0); err != nil {
+		return nil, file, yamlError(name, err)
+	}
+	if len(tree.Docs) == 0 || tree.Docs[0].Body == nil {
+		return nil, file, &JobError{File: name, Message: "the file is empty: a job needs job, boards and stages"}
+	}
+	if len(tree.Docs) > 1 {
+		return nil, file, &JobError{File: name, Message: fmt.Sprintf("the file holds %d documents: one job a file", len(tree.Docs))}
+	}
+	// Aliases can make a small file expand without end; no job needs them.
+	for _, refused := range []ast.NodeType{ast.AliasType, ast.AnchorType, ast.TagType} {
+		for _, node := range ast.Filter(refused, tree.Docs[0].Body) {
+			at := node.GetToken().Position
+			return nil, file, &JobError{name, at.Line, at.Column, fmt.Sprintf("%s is not read here: write the value alone", strings.ToLower(refused.String()))}
+		}
+	}
+	if err = yaml.UnmarshalWithOptions(content, &file, yaml.Strict()); err != nil {
+		return nil, file, yamlError(name, err)
+	}
+	return tree, file, nil
 }
 
 // yamlError turns the library's error into ours, keeping its position.
