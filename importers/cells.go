@@ -220,13 +220,16 @@ func firstRune(text string) rune {
 // "-750 ppm/K". Of a range about nought, "0±30", it is the half width.
 func tempcoOf(cell string) (float64, error) {
 	text := strings.TrimSpace(cell)
-	if at := strings.Index(strings.ToLower(text), "ppm"); at >= 0 {
-		switch fold(text[at+len("ppm"):]) {
-		case "", "k", "c", "perk", "perc", "degc", "perdegc":
-			text = strings.TrimSpace(text[:at])
-		default:
-			return 0, errors.New("not a temperature coefficient: write it in ppm/K, such as 100")
+	for _, ppm := range []string{"ppm", "PPM", "Ppm"} {
+		before, after, found := strings.Cut(text, ppm)
+		if !found {
+			continue
 		}
+		switch fold(after) {
+		case "", "k", "c", "perk", "perc", "degc", "perdegc":
+			text = strings.TrimSpace(before)
+		}
+		break
 	}
 	if rest := strings.TrimLeft(text, "0 "); len(rest) < len(text) && strings.HasPrefix(rest, "±") {
 		text = rest
@@ -261,7 +264,10 @@ func positive(cell, unit string) (float64, error) {
 	if unit == "ohm" {
 		x, err = marking.ParseOhms(cell)
 	} else {
-		x, err = marking.ParseMagnitude(quarters.Replace(cell), unit)
+		if strings.ContainsAny(cell, "½¼⅛⅙⅓") {
+			cell = quarters.Replace(cell)
+		}
+		x, err = marking.ParseMagnitude(cell, unit)
 	}
 	if err == nil && !(x > 0) {
 		err = errors.New("must be above 0: leave the cell empty where nothing is stated")

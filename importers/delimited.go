@@ -10,8 +10,8 @@ import (
 // record is a line of a table: more than one of the file where a cell in quotes
 // holds line ends.
 type record struct {
-	line  int // on which it begins, from 1
-	cells []string
+	line  int      // on which it begins, from 1
+	cells []string // none where the line is empty
 }
 
 // blank reports whether the record holds nothing but white space.
@@ -34,10 +34,15 @@ type delimited struct {
 	at        int // offset of the next record
 	line      int // of that offset, from 1
 	width     int // of the last record
+	most      int // cells of a record
 }
 
 func newDelimited(text, delimiter string) *delimited {
-	return &delimited{text: text, delimiter: delimiter, line: 1}
+	d := &delimited{text: text, delimiter: delimiter, line: 1, most: MaxColumns}
+	if strings.HasPrefix(text, rejectHeading+delimiter) {
+		d.most++ // the column that Rejects adds
+	}
+	return d
 }
 
 // next returns the next record, or io.EOF. Any other error is about the whole
@@ -46,20 +51,13 @@ func (d *delimited) next() (record, error) {
 	if d.at == len(d.text) {
 		return record{}, io.EOF
 	}
-	r := record{line: d.line, cells: make([]string, 0, d.width)}
-	for {
-		if len(r.cells) == MaxColumns {
-			return r, refused("line %d has more than %d cells: this is not a table of stock, or another delimiter divides it", r.line, MaxColumns)
-		}
-		cell, err := d.cell(len(r.cells) + 1)
-		if err != nil {
+	r := record{line: d.line}
+	if c := d.text[d.at]; c != '\n' && c != '\r' {
+		r.cells = make([]string, 0, d.width)
+		if err := d.cells(&r); err != nil {
 			return r, err
 		}
-		r.cells = append(r.cells, unguarded(cell))
-		if !strings.HasPrefix(d.text[d.at:], d.delimiter) {
-			break
-		}
-		d.at += len(d.delimiter)
+		d.width = len(r.cells)
 	}
 	if strings.HasPrefix(d.text[d.at:], "\r\n") {
 		d.at++
@@ -68,8 +66,25 @@ func (d *delimited) next() (record, error) {
 		d.at++
 		d.line++
 	}
-	d.width = len(r.cells)
 	return r, nil
+}
+
+// cells reads the cells of the record and stops before its line end.
+func (d *delimited) cells(r *record) error {
+	for {
+		if len(r.cells) == d.most {
+			return refused("line %d has more than %d cells: this is not a table of stock, or another delimiter divides it", r.line, MaxColumns)
+		}
+		cell, err := d.cell(len(r.cells) + 1)
+		if err != nil {
+			return err
+		}
+		r.cells = append(r.cells, unguarded(cell))
+		if !strings.HasPrefix(d.text[d.at:], d.delimiter) {
+			return nil
+		}
+		d.at += len(d.delimiter)
+	}
 }
 
 // cell returns the next cell and stops before the delimiter or line end after it.
@@ -79,13 +94,17 @@ func (d *delimited) cell(number int) (string, error) {
 		return d.quotedCell(open, number)
 	}
 	first := d.delimiter[0]
+	longest := MaxCellBytes
+	if strings.HasPrefix(d.text[start:], "'") {
+		longest++ // guarded
+	}
 	at := start
 	for ; at < len(d.text); at++ {
 		c := d.text[at]
 		if c == '\n' || c == '\r' || c == first && strings.HasPrefix(d.text[at:], d.delimiter) {
 			break
 		}
-		if at-start == MaxCellBytes {
+		if at-start == longest {
 			return "", refused("line %d, column %d: the cell is longer than %d bytes: this is not a table of stock, or another delimiter divides it", d.line, number, MaxCellBytes)
 		}
 	}
@@ -97,12 +116,16 @@ func (d *delimited) cell(number int) (string, error) {
 // quotes undone.
 func (d *delimited) quotedCell(open, number int) (string, error) {
 	start := open + 1
+	end := start + MaxCellBytes + 1 // before which the cell must close
+	if strings.HasPrefix(d.text[start:], "'") {
+		end++ // guarded
+	}
 	doubled := false
 	for at := start; ; at += 2 {
-		limit := max(at, min(len(d.text), start+MaxCellBytes+1))
+		limit := max(at, min(len(d.text), end))
 		length := strings.IndexByte(d.text[at:limit], '"')
 		if length < 0 {
-			if len(d.text)-start <= MaxCellBytes {
+			if len(d.text) <= end {
 				return "", refused("line %d, column %d: the quote that opens the cell is never closed: close it, or double it (\"\") where it belongs to the text", d.line, number)
 			}
 			return "", refused("line %d, column %d: the quote that opens the cell is not closed within %d bytes: close it, or double it (\"\") where it belongs to the text", d.line, number, MaxCellBytes)
@@ -110,6 +133,7 @@ func (d *delimited) quotedCell(open, number int) (string, error) {
 		at += length
 		if strings.HasPrefix(d.text[at:], `""`) {
 			doubled = true
+			end++
 			continue
 		}
 		cell := d.text[start:at]
@@ -175,7 +199,7 @@ func layoutOf(text string, delimiter rune, headings headingReader) layout {
 func headingLayout(text, delimiter string, headings headingReader) layout {
 	l := layout{delimiter: delimiter}
 	lines := newDelimited(text, delimiter)
-	for n := 0; n < headingLines; {
+	for n, depth := 0, 0; n < headingLines && depth < headingDepth; depth++ {
 		r, err := lines.next()
 		if err == io.EOF {
 			break

@@ -3,10 +3,10 @@ package importers
 import "tickdrawer/inventory"
 
 // synonyms holds the headings that are recognised for each field: English,
-// German, French, Spanish. Write a new one in lower case; case, accents, spaces
-// and punctuation do not matter, and neither does a unit after it ("Value (nF)",
-// "Toleranz in %"), see headingReader.resolve. A heading that could name two
-// fields belongs in none of them ("Part", "Number", "Amount").
+// German, French, Spanish. To add one, write it here in lower case: case,
+// accents, spaces and punctuation do not matter (so tolérance is there already),
+// nor does a unit after it ("Value (nF)", "Toleranz in %"), see statedUnit. A
+// heading that could name two fields belongs to neither ("Part", "Amount").
 var synonyms = map[Field][]string{
 	FieldKind: {
 		"kind", "type", "component", "component type", "part type", "category",
@@ -17,19 +17,19 @@ var synonyms = map[Field][]string{
 	FieldValue: {
 		"value", "val", "nominal value", "nominal", "resistance", "capacitance",
 		"wert", "nennwert", "widerstandswert", "kapazität",
-		"valeur", "valeur nominale", "résistance", "capacité",
+		"valeur", "valeur nominale", "capacité",
 		"valor", "valor nominal", "resistencia", "capacidad",
 	},
 	FieldTolerance: {
 		"tolerance", "tol", "tolerance percent", "accuracy",
 		"toleranz", "genauigkeit",
-		"tolérance", "précision",
-		"tolerancia", "precisión",
+		"précision",
+		"tolerancia",
 	},
 	FieldQuantity: {
 		"quantity", "qty", "count", "pieces", "pcs", "stock", "on hand", "in stock", "qty on hand", "quantity on hand", "stock quantity",
 		"menge", "anzahl", "stück", "stückzahl", "stk", "bestand", "lagerbestand",
-		"quantité", "qté", "nombre", "pièces", "en stock",
+		"quantité", "qté", "nombre", "en stock",
 		"cantidad", "cant", "piezas", "unidades", "existencias",
 	},
 	FieldBin: {
@@ -42,7 +42,7 @@ var synonyms = map[Field][]string{
 		"rating v", "voltage", "voltage rating", "rated voltage", "max voltage", "working voltage", "vdc", "volts", "rating volt",
 		"spannung", "nennspannung", "spannungsfestigkeit", "max spannung",
 		"tension", "tension nominale", "tension max",
-		"voltaje", "tensión", "tensión nominal", "voltaje máximo",
+		"voltaje", "tensión nominal", "voltaje máximo",
 	},
 	FieldRatingW: {
 		"rating w", "power", "power rating", "rated power", "wattage", "max power", "watts",
@@ -57,7 +57,7 @@ var synonyms = map[Field][]string{
 		"dieléctrico", "tecnología",
 	},
 	FieldTempco: {
-		"tempco", "tcr", "tc", "temperature coefficient", "temp coefficient", "temp co", "ppm",
+		"tempco", "tcr", "tc", "temperature coefficient", "temp coefficient", "ppm",
 		"temperaturkoeffizient", "temperaturbeiwert", "tk",
 		"coefficient de température",
 		"coeficiente de temperatura",
@@ -83,7 +83,7 @@ var synonyms = map[Field][]string{
 	FieldMeasured: {
 		"measured", "measured value", "measurement", "meter reading",
 		"messwert", "gemessen", "gemessener wert",
-		"mesuré", "mesure", "valeur mesurée",
+		"mesuré", "valeur mesurée",
 		"medido", "medida", "valor medido",
 	},
 	FieldNote: {
@@ -117,7 +117,7 @@ var synonyms = map[Field][]string{
 
 // kindHeadings are the headings of FieldValue that say the kind as well.
 var kindHeadings = map[string]inventory.Kind{
-	"resistance": inventory.Resistor, "widerstandswert": inventory.Resistor, "résistance": inventory.Resistor, "resistencia": inventory.Resistor,
+	"resistance": inventory.Resistor, "widerstandswert": inventory.Resistor, "resistencia": inventory.Resistor,
 	"capacitance": inventory.Capacitor, "kapazität": inventory.Capacitor, "capacité": inventory.Capacitor, "capacidad": inventory.Capacitor,
 }
 

@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"io"
 	"strings"
+	"unicode"
 	"unicode/utf8"
 )
 
@@ -100,6 +101,8 @@ func (t *Table) detected() string {
 // readRows reads all lines of the table into rows, rejected rows and skips.
 func (t *Table) readRows(lines *delimited, heading record, options Options) error {
 	receipts := newReceiptReader(t.File, t.Columns, options)
+	t.Rows = make([]Row, 0, min(lineEnds(lines.text), MaxRows))
+	cells := 0
 	for {
 		rec, err := lines.next()
 		if err == io.EOF {
@@ -114,6 +117,9 @@ func (t *Table) readRows(lines *delimited, heading record, options Options) erro
 		}
 		if t.RowCount()+len(t.Skipped) == MaxRows {
 			return refused("there are more than %d rows: divide the file", MaxRows)
+		}
+		if cells += len(rec.cells); cells > MaxCells {
+			return refused("there are more than %d cells: divide the file, or leave out columns", MaxCells)
 		}
 		if reason := t.skipReason(rec, heading); reason != "" {
 			t.Skipped = append(t.Skipped, Skip{Line: rec.line, Reason: reason})
@@ -161,36 +167,35 @@ func sameCells(a, b []string) bool {
 	return true
 }
 
-// mostTotals is the most cells with text that a line of totals has.
-const mostTotals = 6
-
 // total reports whether the line sums up those above it: one cell says so, and
-// the others hold numbers.
+// the others hold figures.
 func (t *Table) total(rec record) bool {
-	said, texts := false, 0
+	said := -1
 	for i, cell := range rec.cells {
-		if cell = strings.TrimSpace(cell); cell == "" {
-			continue
+		if saysTotal(strings.TrimSpace(cell)) {
+			said = i
+			break
 		}
-		if texts++; texts > mostTotals {
-			return false
-		}
-		if i < len(t.Columns) && t.Columns[i].Field == fieldReason {
-			continue
-		}
-		switch {
-		case !said && saysTotal(cell):
-			said = true
-		case !figure(cell):
+	}
+	if said < 0 {
+		return false
+	}
+	for i, cell := range rec.cells {
+		cell = strings.TrimSpace(cell)
+		reason := i < len(t.Columns) && t.Columns[i].Field == fieldReason
+		if i != said && cell != "" && !reason && !figure(cell) {
 			return false
 		}
 	}
-	return said
+	return true
 }
 
 // saysTotal reports whether the cell is a word for a total, perhaps with the
 // figure after it.
 func saysTotal(cell string) bool {
+	if cell == "" || len(cell) > longestHeading || !totalInitial[unicode.ToLower(firstRune(cell))] {
+		return false
+	}
 	if at := strings.IndexAny(cell, "0123456789"); at >= 0 {
 		return totalWord[fold(cell[:at])] && figure(cell[at:])
 	}
@@ -212,6 +217,16 @@ var totalWord = func() map[string]bool {
 		words[fold(word)] = true
 	}
 	return words
+}()
+
+// totalInitial holds the letters that totalWords begin with, so that few cells
+// need folding.
+var totalInitial = func() map[rune]bool {
+	initials := map[rune]bool{}
+	for _, word := range totalWords {
+		initials[firstRune(word)] = true
+	}
+	return initials
 }()
 
 // lineEndOf returns the line end that the text uses first; LF where it has none.

@@ -71,7 +71,7 @@ func (row *reading) cellAt(i int) string {
 		return ""
 	}
 	// Spreadsheets keep leading zeros this way: ="0805".
-	if inner, found := strings.CutPrefix(cell, `="`); found && strings.IndexByte(inner, '"') == len(inner)-1 {
+	if inner, found := strings.CutPrefix(cell, `="`); found && inner != "" && strings.IndexByte(inner, '"') == len(inner)-1 {
 		return strings.TrimSpace(inner[:len(inner)-1])
 	}
 	return cell
@@ -144,6 +144,10 @@ func (row *reading) checkWidth() {
 // its value shows; else the one that the person gave. "" after a problem.
 func (row *reading) kind() inventory.Kind {
 	if cell := row.cell(FieldKind); cell != "" {
+		if len(cell) > longestHeading {
+			row.problem(FieldKind, errors.New("no kind of component; the kinds are "+kindWords()))
+			return ""
+		}
 		kind, err := inventory.ParseKind(cell)
 		if err != nil {
 			row.problem(FieldKind, err)
@@ -160,14 +164,21 @@ func (row *reading) kind() inventory.Kind {
 	if row.options.Kind != "" {
 		return row.options.Kind
 	}
-	err := errors.New("the kind is missing: write one of " + kindWords())
 	if _, hasKind := row.numberOf[FieldKind]; hasKind || !hasValue {
-		row.problem(FieldKind, err)
+		row.problem(FieldKind, errKindMissing)
 	} else {
-		row.problem(FieldValue, errors.New("no column gives the kind, and the value does not show it: write the value with its unit (4k7Ω, 100nF), or add a column kind"))
+		row.problem(FieldValue, errKindUnseen)
 	}
 	return ""
 }
+
+// What is missing in a row.
+var (
+	errKindMissing     = errors.New("the kind is missing: write one of " + kindWords())
+	errKindUnseen      = errors.New("no column gives the kind, and the value does not show it: write the value with its unit (4k7Ω, 100nF), or add a column kind")
+	errValueMissing    = errors.New("the value is missing: write one such as 4k7 or 100n")
+	errQuantityMissing = errors.New("the quantity is missing: write the number of pieces")
+)
 
 func kindWords() string {
 	words := make([]string, 0, len(inventory.Kinds()))
@@ -259,7 +270,7 @@ func (row *reading) readValue(part *inventory.Part) {
 // value returns the value in the unit, and the tolerance that its letter states.
 func (row *reading) value(cell, unit string) (float64, *marking.Tolerance) {
 	if cell == "" {
-		row.problem(FieldValue, errors.New("the value is missing: write one such as 4k7 or 100n"))
+		row.problem(FieldValue, errValueMissing)
 		return 0, nil
 	}
 	parse := marking.ParseMarkedOhms
@@ -309,7 +320,7 @@ func (row *reading) readFigures(part *inventory.Part) {
 func (row *reading) quantity() int64 {
 	cell := row.cell(FieldQuantity)
 	if cell == "" {
-		row.problem(FieldQuantity, errors.New("the quantity is missing: write the number of pieces"))
+		row.problem(FieldQuantity, errQuantityMissing)
 		return 0
 	}
 	pieces, err := countOf(cell, row.options.Stocktake)

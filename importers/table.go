@@ -14,11 +14,17 @@ const (
 	MaxFileBytes = 64 << 20   // of the file as it lies on the disk
 	MaxRows      = 250_000    // below the headings, blank lines not counted
 	MaxColumns   = 256        // of any line
+	MaxCells     = 8_000_000  // of all rows
 	MaxCellBytes = 32 << 10   // of one cell in UTF-8
 	MaxTextBytes = 200        // of a bin, part number, package or dielectric
 	MaxNoteBytes = 4 << 10    // of a note with what was added from other columns
-	headingLines = 100        // within which the headings must stand, blank lines not counted
 	MaxPieces    = 10_000_000 // of one row
+)
+
+// The lines within which the headings must stand.
+const (
+	headingLines = 100    // with text
+	headingDepth = 10_000 // with blank ones
 )
 
 // Field is what a column can mean.
