@@ -49,6 +49,9 @@ type Circuit struct {
 	// Stalls returns, for values whose phases do not all end, which voltage
 	// cannot be reached and why, for people; "" where they all end.
 	Stalls func(*Conditions, *Values) string
+	// currents returns what flows while the latch is high or low and the capacitor
+	// is at a voltage between the levels (rails.go).
+	currents func(c *Conditions, v *Values, capacitorV float64, high bool) currents
 	// wire writes the circuit's elements around the timer (netlist.go).
 	wire func(*netlist)
 }
@@ -80,4 +83,22 @@ func pulledDown(c *Conditions, ra, rb, rd float64) (vth, rth float64) {
 		return c.SupplyV, rb
 	}
 	return (c.SupplyV*rx + c.SwitchV*ra) / (ra + rx), rb + ra*rx/(ra+rx)
+}
+
+// limbCurrents returns what flows in the wirings with a discharge pin: charging
+// through ra and rb, or discharging through rb and rd against ra.
+func limbCurrents(c *Conditions, ra, rb, rd, capacitorV float64, high bool) currents {
+	if high {
+		charging := (c.SupplyV - capacitorV) / (ra + rb)
+		return currents{ohms: [MaxResistors]float64{charging, charging, 0}, capacitorA: charging}
+	}
+	vth, rth := pulledDown(c, ra, rb, rd)
+	discharging := max(0, (capacitorV-vth)/rth)
+	junctionV := capacitorV
+	if rb > 0 {
+		junctionV -= discharging * rb
+	}
+	pulling := (c.SupplyV - junctionV) / ra
+	sunk := pulling + discharging
+	return currents{ohms: [MaxResistors]float64{pulling, discharging, sunk}, switchA: sunk, capacitorA: discharging}
 }

@@ -10,6 +10,7 @@ var classic = Circuit{
 	Phases:     classicPhases,
 	FirstHighS: classicFirstHighS,
 	Stalls:     classicStalls,
+	currents:   classicCurrents,
 	wire:       classicWire,
 }
 
@@ -29,10 +30,15 @@ func classicFirstHighS(c *Conditions, v *Values) float64 {
 }
 
 func classicStalls(c *Conditions, v *Values) string {
-	vth, _ := pulledDown(c, v.Ohms[0], v.Ohms[1], 0)
 	return noOscillation(
 		stallsCharging(c, "ra and rb charge the capacitor", c.SupplyV),
-		stallsDischarging(c, "the discharge pin, with ra pulling up against it, takes the capacitor", vth))
+		stallsPulledDown(c, v.Ohms[0]))
+}
+
+// stallsPulledDown returns why the discharge pin cannot pull down ra, or "".
+func stallsPulledDown(c *Conditions, ra float64) string {
+	vth, _ := pulledDown(c, ra, 0, 0)
+	return stallsDischarging(c, "the discharge pin, with ra pulling up against it, takes the capacitor", vth)
 }
 
 func classicWire(n *netlist) {
@@ -40,4 +46,8 @@ func classicWire(n *netlist) {
 	n.resistor("ra", "vcc", "dis")
 	n.resistor("rb", "dis", "cap")
 	n.capacitor(0)
+}
+
+func classicCurrents(c *Conditions, v *Values, capacitorV float64, high bool) currents {
+	return limbCurrents(c, v.Ohms[0], v.Ohms[1], 0, capacitorV, high)
 }

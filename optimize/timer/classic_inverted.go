@@ -16,6 +16,7 @@ var classicInverted = Circuit{
 	},
 	FirstHighS: func(c *Conditions, v *Values) float64 { return classicPhases(c, v).LowS },
 	Stalls:     classicStalls,
+	currents:   classicCurrents,
 	wire: func(n *netlist) {
 		classicWire(n)
 		n.line("Binverter inverted 0 V=V(vcc)*(1-V(state))")

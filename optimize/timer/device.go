@@ -3,6 +3,8 @@ package timer
 import (
 	"fmt"
 	"math"
+
+	"tickdrawer/inventory/marking"
 )
 
 // Stated is a figure of a data sheet, at 25 °C. Zero is a figure that the sheet
@@ -133,7 +135,7 @@ func (d *Device) check(c *Conditions) error {
 		return fmt.Errorf("a load of %g A cannot be computed with: state the current that the output delivers, such as 5mA", c.LoadA)
 	case d.SourceMaxA > 0 && c.LoadA > d.SourceMaxA:
 		return fmt.Errorf("the output of %s delivers %s at most, not %s: put a transistor between it and the load",
-			d.Name, engineering(d.SourceMaxA, "A"), engineering(c.LoadA, "A"))
+			d.Name, marking.FormatAmperes(d.SourceMaxA), marking.FormatAmperes(c.LoadA))
 	}
 	return nil
 }
@@ -238,15 +240,4 @@ func highestA(points []Drop) float64 {
 		highest = max(highest, p.CurrentA)
 	}
 	return highest
-}
-
-// lowestA returns the least current at which the drop is stated, 0 for none.
-func lowestA(points []Drop) float64 {
-	lowest := 0.0
-	for _, p := range points {
-		if lowest == 0 || p.CurrentA < lowest {
-			lowest = p.CurrentA
-		}
-	}
-	return lowest
 }

@@ -45,25 +45,43 @@ func (d Diode) at(ambientC float64) junction {
 // Newton's steps fall to it and never pass it.
 func solveW(p, q, drop float64) float64 {
 	high := drop / q
+	if p == 0 {
+		return min(high, largestW)
+	}
 	if byExponential := math.Log1p(drop / p); byExponential < high {
 		high = byExponential
 		// One step of the fixed point lies near the root, on its left.
 		if w := math.Log1p(max(drop-q*high, 0) / p); w > 0 {
-			grown := math.Expm1(w)
+			grown := expm1(w)
 			high = min(high, w+(drop-p*grown-q*w)/(p*grown+p+q))
 		}
 	}
-	w := high
+	w := min(high, largestW)
 	for range 60 {
-		grown := math.Expm1(w)
+		grown := expm1(w)
 		step := (p*grown + q*w - drop) / (p*grown + p + q)
 		w -= step
-		if step <= 1e-14*w {
+		if step*step <= enough*w {
 			break
 		}
 	}
 	return max(w, 0)
 }
+
+// enough ends Newton's steps: the error after a step is at most half its square,
+// as the second derivatives here do not exceed the first.
+const enough = 1e-15
+
+// expm1 returns exp(w)-1, by the faster exp where nothing cancels.
+func expm1(w float64) float64 {
+	if w > 1 {
+		return math.Exp(w) - 1
+	}
+	return math.Expm1(w)
+}
+
+// largestW keeps exp(w) finite where nothing but the junction limits the current.
+const largestW = 600
 
 // blockingW bounds the error of taking a blocking diode's current as IS: with x
 // slopes of reverse voltage it is IS (1 - exp(-x)), beside (exp(w)) IS that the
@@ -113,15 +131,16 @@ func (d junction) seriesRampS(r, other, source, farads, drop0, drop1 float64) fl
 }
 
 // leakyOhm returns ∫ dv/i for seriesRampS with the reverse biased diode's
-// current solved at every voltage, ohm.
+// current solved at every voltage, ohm. A panel spans some four slopes of the
+// voltage, over which that current may come up from nothing.
 func (d junction) leakyOhm(r, other, w0, w1 float64) float64 {
 	sum := 0.0
 	for low := w1; low < w0; {
-		high := panelEnd(low, w0)
+		high := min(panelEnd(low, w0), low+4*d.slopeV/(r*d.saturationA*math.Exp(low)+d.slopeV))
 		middle, half := (high+low)/2, (high-low)/2
 		for i, node := range legendreNodes {
 			for _, w := range [2]float64{middle - half*node, middle + half*node} {
-				grown := d.saturationA * math.Expm1(w)
+				grown := d.saturationA * expm1(w)
 				slope := r*(grown+d.saturationA) + d.slopeV
 				sum += half * legendreWeights[i] * slope / (grown + d.reverseA(other, r*grown+d.slopeV*w))
 			}
@@ -132,26 +151,84 @@ func (d junction) leakyOhm(r, other, w0, w1 float64) float64 {
 }
 
 // reverseA returns the current that drop drives through r and the reverse biased
-// diode, A. With x slopes of reverse voltage, r IS (1-exp(-x)) + slope x = drop:
-// concave and rising, so Newton's steps climb to the root and never pass it.
+// diode, A.
 func (d junction) reverseA(r, drop float64) float64 {
-	most := r * d.saturationA
-	x := max((drop-most)/d.slopeV, drop/(most+d.slopeV))
+	return d.saturationA * -math.Expm1(-solveReverse(r*d.saturationA, d.slopeV, drop))
+}
+
+// solveReverse returns the x ≥ 0 at which p (1-exp(-x)) + q x = drop, for p ≥ 0,
+// q > 0, drop ≥ 0. The left side is concave and rising: from below its root
+// Newton's steps climb to it and never pass it.
+func solveReverse(p, q, drop float64) float64 {
+	x := max((drop-p)/q, drop/(p+q))
 	for range 60 {
 		passed := -math.Expm1(-x)
-		step := (drop - most*passed - d.slopeV*x) / (most*(1-passed) + d.slopeV)
+		step := (drop - p*passed - q*x) / (p*(1-passed) + q)
 		x += step
-		if step <= 1e-12*x {
+		if step*step <= enough*x {
 			break
 		}
 	}
-	return d.saturationA * -math.Expm1(-x)
+	return x
+}
+
+// leakingRampS returns the time in which the voltage between the capacitor and a
+// sink falls from drop0 to drop1 while rb, with the reverse biased diode across
+// it, and sink ohm discharge it, s; +Inf where drop1 is not positive.
+//
+// A diode that passes its whole saturation current is a source across rb, which
+// is a voltage IS rb in series with it. With less voltage u across the two, the
+// current is i = u/rb + IS (1 - exp(-u/slope)), and
+// t = C [ sink ln(i0/i1) + ∫ du/i ].
+func (d junction) leakingRampS(sink, rb, farads, drop0, drop1 float64) float64 {
+	if drop1 <= 0 {
+		return math.Inf(1)
+	}
+	if d.saturationA == 0 || rb == 0 {
+		return (rb + sink) * farads * math.Log(drop0/drop1)
+	}
+	p, q := sink*d.saturationA, d.slopeV*(1+sink/rb)
+	x1 := solveReverse(p, q, drop1)
+	if x1+math.Log1p(x1*d.slopeV/(rb*d.saturationA)) >= fullyBlockingX {
+		shift := d.saturationA * rb
+		return (rb + sink) * farads * math.Log((drop0+shift)/(drop1+shift))
+	}
+	x0 := solveReverse(p, q, drop0)
+	i0, i1 := d.leakingA(rb, x0), d.leakingA(rb, x1)
+	return farads * (sink*math.Log(i0/i1) + d.leakingOhm(rb, x0, x1))
+}
+
+// fullyBlockingX is blockingW for leakingRampS, where both forms meet closely
+// enough for the search's bounds.
+const fullyBlockingX = 30
+
+// leakingA returns the current through rb and the diode across it with x slopes
+// of reverse voltage, A.
+func (d junction) leakingA(rb, x float64) float64 {
+	return x*d.slopeV/rb - d.saturationA*math.Expm1(-x)
+}
+
+// leakingOhm returns ∫ du/i for leakingRampS, ohm. The integrand has poles near
+// ±2πi, and is like 1/x near zero; see panelEnd.
+func (d junction) leakingOhm(rb, x0, x1 float64) float64 {
+	sum := 0.0
+	for low := x1; low < x0; {
+		high := min(x0, low+3, 1.7*low)
+		middle, half := (high+low)/2, (high-low)/2
+		for i, node := range legendreNodes {
+			sum += half * legendreWeights[i] * d.slopeV * (1/d.leakingA(rb, middle-half*node) + 1/d.leakingA(rb, middle+half*node))
+		}
+		low = high
+	}
+	return sum
 }
 
 // panelEnd returns where the panel of a quadrature over w that begins at low
-// ends. The integrands turn over within a few units of w and are like 1/w near
-// zero, so a panel spans three units and a threefold rise at most.
-func panelEnd(low, end float64) float64 { return min(end, low+3, 3*low) }
+// ends. The integrands turn over like 1/(1+exp(w)), with poles π from the axis,
+// and are like 1/w near zero. With the panel's half as the unit, the poles lie
+// outside the ellipse whose half-axes sum to 7.5: eight points err by 7.5^-16,
+// below 1e-13.
+func panelEnd(low, end float64) float64 { return min(end, low+1.6, 1.7*low) }
 
 // bypassRampS returns the time in which the voltage between the supply and the
 // capacitor falls from drop0 to drop1 while the supply drives it through ra and
@@ -170,15 +247,34 @@ func (d junction) bypassRampS(ra, rb, farads, drop0, drop1 float64) float64 {
 	return farads * (ra*math.Log(i0/i1) + d.bypassOhm(rb, w0, w1))
 }
 
+// seriesA returns the current that drop drives through r and the diode, A.
+func (d junction) seriesA(r, drop float64) float64 {
+	if d.saturationA == 0 {
+		return drop / r
+	}
+	return d.saturationA * math.Expm1(solveW((r+d.seriesOhm)*d.saturationA, d.slopeV, drop))
+}
+
+// bypassCurrents returns the current that drop drives through ra and then rb with
+// the diode across it, and rb's part of it, A.
+func (d junction) bypassCurrents(ra, rb, drop float64) (all, throughRB float64) {
+	if d.saturationA == 0 || rb == 0 {
+		return drop / ra, 0
+	}
+	share := 1 + ra/rb
+	w := solveW(d.saturationA*(ra+d.seriesOhm*share), d.slopeV*share, drop)
+	return d.bypassA(rb, w), (d.saturationA*expm1(w)*d.seriesOhm + d.slopeV*w) / rb
+}
+
 // bypassA returns the current through the diode and rb together, A.
 func (d junction) bypassA(rb, w float64) float64 {
-	through := d.saturationA * math.Expm1(w)
+	through := d.saturationA * expm1(w)
 	return through + (through*d.seriesOhm+d.slopeV*w)/rb
 }
 
 // bypassOhm returns ∫ du/i from w1 to w0 over the voltage u on the diode and rb,
-// ohm: ∫ (seriesOhm IS exp(w) + slope)/i(w) dw, by Gauss and Legendre's rule of
-// six points a panel.
+// ohm: ∫ (seriesOhm IS exp(w) + slope)/i(w) dw, by the Gauss-Legendre rule of
+// eight points a panel.
 func (d junction) bypassOhm(rb, w0, w1 float64) float64 {
 	sum := 0.0
 	for low := w1; low < w0; {
@@ -195,9 +291,9 @@ func (d junction) bypassOhm(rb, w0, w1 float64) float64 {
 	return sum
 }
 
-// The positive nodes and their weights of the six-point Gauss-Legendre rule
-// (DLMF table 3.5.2; the test derives them again from the polynomial).
+// The positive nodes and their weights of the eight-point Gauss-Legendre rule
+// (DLMF section 3.5; the test holds them against the polynomials they are for).
 var (
-	legendreNodes   = [3]float64{0.238619186083196909, 0.661209386466264514, 0.932469514203152028}
-	legendreWeights = [3]float64{0.467913934572691047, 0.360761573048138608, 0.171324492379170345}
+	legendreNodes   = [4]float64{0.1834346424956498, 0.5255324099163290, 0.7966664774136267, 0.9602898564975363}
+	legendreWeights = [4]float64{0.3626837833783620, 0.3137066458778873, 0.2223810344533745, 0.1012285362903763}
 )

@@ -12,27 +12,30 @@ var diodeBypass = Circuit{
 	Phases: func(c *Conditions, v *Values) Phases {
 		ra, rb := v.Ohms[0], v.Ohms[1]
 		d := v.Diode.at(c.AmbientC)
-		vth, rth := pulledDown(c, ra, rb, 0)
+		junctionV, junctionOhm := pulledDown(c, ra, 0, 0)
 		return Phases{
 			HighS: d.bypassRampS(ra, rb, v.Farads, c.SupplyV-c.LowLevelV, c.SupplyV-c.HighLevelV),
-			// The diode, reverse biased, passes its saturation current: a
-			// source across RB, which is a voltage in series with it.
-			LowS: rampS(vth-d.saturationA*rb, rth, v.Farads, c.HighLevelV, c.LowLevelV),
+			LowS:  d.leakingRampS(junctionOhm, rb, v.Farads, c.HighLevelV-junctionV, c.LowLevelV-junctionV),
 		}
 	},
 	FirstHighS: func(c *Conditions, v *Values) float64 {
 		d := v.Diode.at(c.AmbientC)
 		return d.bypassRampS(v.Ohms[0], v.Ohms[1], v.Farads, c.SupplyV, c.SupplyV-c.HighLevelV)
 	},
+	currents: func(c *Conditions, v *Values, capacitorV float64, high bool) currents {
+		if !high {
+			return classicCurrents(c, v, capacitorV, false)
+		}
+		charging, bypassed := v.Diode.at(c.AmbientC).bypassCurrents(v.Ohms[0], v.Ohms[1], c.SupplyV-capacitorV)
+		return currents{ohms: [MaxResistors]float64{charging, bypassed}, capacitorA: charging}
+	},
 	wire: func(n *netlist) {
 		classicWire(n)
 		n.diode("dis", "cap")
 	},
 	Stalls: func(c *Conditions, v *Values) string {
-		d := v.Diode.at(c.AmbientC)
-		vth, _ := pulledDown(c, v.Ohms[0], v.Ohms[1], 0)
 		return noOscillation(
 			stallsCharging(c, "ra charges the capacitor", c.SupplyV),
-			stallsDischarging(c, "the discharge pin, with ra pulling up against it, takes the capacitor", vth-d.saturationA*v.Ohms[1]))
+			stallsPulledDown(c, v.Ohms[0]))
 	},
 }

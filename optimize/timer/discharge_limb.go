@@ -1,6 +1,10 @@
 package timer
 
-import "fmt"
+import (
+	"fmt"
+
+	"tickdrawer/inventory/marking"
+)
 
 // dischargeLimb is classic with RD between the RA-RB junction and the discharge
 // pin, which lengthens the low time. It runs only while RD plus the switch can
@@ -22,6 +26,9 @@ var dischargeLimb = Circuit{
 		}
 	},
 	FirstHighS: classicFirstHighS,
+	currents: func(c *Conditions, v *Values, capacitorV float64, high bool) currents {
+		return limbCurrents(c, v.Ohms[0], v.Ohms[1], v.Ohms[2], capacitorV, high)
+	},
 	wire: func(n *netlist) {
 		n.timer("cap", "cap", "dis")
 		n.resistor("ra", "vcc", "junction")
@@ -49,7 +56,7 @@ func limbLimitOhm(c *Conditions, ra float64) float64 {
 func limbAdvice(c *Conditions, ra float64) string {
 	limit := limbLimitOhm(c, ra)
 	if limit <= 0 {
-		return fmt.Sprintf(" (no rd is small enough for ra of %s)", engineering(ra, "ohm"))
+		return fmt.Sprintf(" (no rd is small enough for ra of %s)", marking.FormatOhms(ra))
 	}
-	return fmt.Sprintf(" (with ra of %s, rd must stay below %s)", engineering(ra, "ohm"), engineering(limit, "ohm"))
+	return fmt.Sprintf(" (with ra of %s, rd must stay below %s)", marking.FormatOhms(ra), marking.FormatOhms(limit))
 }

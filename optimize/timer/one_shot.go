@@ -15,6 +15,15 @@ var oneShot = Circuit{
 	},
 	FirstHighS: func(*Conditions, *Values) float64 { return 0 },
 	Stalls:     pulseStalls,
+	// The discharge of the capacitor itself is left out: the switch limits it, and it
+	// is over at once.
+	currents: func(c *Conditions, v *Values, capacitorV float64, high bool) currents {
+		if high {
+			return pulseCurrents(c, v, capacitorV)
+		}
+		resting := (c.SupplyV - c.SwitchV) / (v.Ohms[0] + c.SwitchOhm)
+		return currents{ohms: [MaxResistors]float64{resting}, switchA: resting}
+	},
 	wire: func(n *netlist) {
 		n.timer("trigger", "cap", "cap")
 		n.trigger("trigger")
@@ -34,4 +43,9 @@ func pulseS(c *Conditions, v *Values, startV float64) float64 {
 
 func pulseStalls(c *Conditions, _ *Values) string {
 	return because("the pulse never ends: ", stallsCharging(c, "r charges the capacitor", c.SupplyV))
+}
+
+func pulseCurrents(c *Conditions, v *Values, capacitorV float64) currents {
+	charging := (c.SupplyV - capacitorV) / v.Ohms[0]
+	return currents{ohms: [MaxResistors]float64{charging}, capacitorA: charging}
 }

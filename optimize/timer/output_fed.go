@@ -21,6 +21,14 @@ var outputFed = Circuit{
 		return rampS(c.OutHighV, v.Ohms[0]+c.OutHighOhm, v.Farads, 0, c.HighLevelV)
 	},
 	Stalls: outputFedStalls,
+	currents: func(c *Conditions, v *Values, capacitorV float64, high bool) currents {
+		if high {
+			charging := (c.OutHighV - capacitorV) / (v.Ohms[0] + c.OutHighOhm)
+			return currents{ohms: [MaxResistors]float64{charging}, outA: charging, capacitorA: charging}
+		}
+		discharging := (capacitorV - c.OutLowV) / (v.Ohms[0] + c.OutLowOhm)
+		return currents{ohms: [MaxResistors]float64{discharging}, outA: -discharging, capacitorA: discharging}
+	},
 	wire: func(n *netlist) {
 		n.timer("cap", "cap", "dis")
 		n.resistor("r", "out", "cap")

@@ -21,6 +21,15 @@ var outputFedSplit = Circuit{
 		return d.seriesRampS(v.Ohms[0], v.Ohms[1], c.OutHighOhm, v.Farads, c.OutHighV, c.OutHighV-c.HighLevelV)
 	},
 	Stalls: outputFedStalls,
+	currents: func(c *Conditions, v *Values, capacitorV float64, high bool) currents {
+		d := v.Diode.at(c.AmbientC)
+		if high {
+			charging := d.seriesA(v.Ohms[0]+c.OutHighOhm, c.OutHighV-capacitorV)
+			return currents{ohms: [MaxResistors]float64{charging, 0}, outA: charging, capacitorA: charging}
+		}
+		discharging := d.seriesA(v.Ohms[1]+c.OutLowOhm, capacitorV-c.OutLowV)
+		return currents{ohms: [MaxResistors]float64{0, discharging}, outA: -discharging, capacitorA: discharging}
+	},
 	wire: func(n *netlist) {
 		n.timer("cap", "cap", "dis")
 		n.diode("out", "charge")

@@ -10,6 +10,9 @@ var powerOnPulse = Circuit{
 	OneShot:   true,
 	HighTrend: Trend{+1},
 	Phases:    func(c *Conditions, v *Values) Phases { return Phases{HighS: pulseS(c, v, 0)} },
+	currents: func(c *Conditions, v *Values, capacitorV float64, _ bool) currents {
+		return pulseCurrents(c, v, capacitorV)
+	},
 	wire: func(n *netlist) {
 		n.timer("cap", "cap", "dis")
 		n.resistor("r", "vcc", "cap")

@@ -2,7 +2,6 @@ package timer
 
 import (
 	"fmt"
-	"math"
 	"strings"
 )
 
@@ -52,25 +51,4 @@ func volts(a, b float64) (string, string) {
 		}
 	}
 	return fmt.Sprintf("%.9g V", a), fmt.Sprintf("%.9g V", b)
-}
-
-// engineering returns x with three digits, an SI prefix and its unit: "49.9 kohm".
-func engineering(x float64, unit string) string {
-	if x == 0 || math.IsInf(x, 0) || math.IsNaN(x) {
-		return fmt.Sprintf("%g %s", x, unit)
-	}
-	const prefixes = "pnum kMG"
-	step := min(max(int(math.Floor(math.Log10(math.Abs(x))/3)), -4), 3)
-	scaled := x / math.Pow(1000, float64(step))
-	if math.Abs(scaled) >= 999.5 && step < 3 {
-		scaled, step = scaled/1000, step+1
-	}
-	text := fmt.Sprintf("%.3g", scaled)
-	if strings.Contains(text, "e") {
-		text = fmt.Sprintf("%.0f", scaled)
-	}
-	if step == 0 {
-		return text + " " + unit
-	}
-	return text + " " + prefixes[step+4:step+5] + unit
 }
