@@ -100,7 +100,7 @@ func TestReadRefusesWhatIsNoTable(t *testing.T) {
 		{"UTF-16 cut off", "\xFF\xFEk\x00i", "cut off", Options{}},
 		{"UTF-8 with one foreign byte", headings + "resistor,4k7 Ω,1\nresistor,1k Ω,1\ncapacitor,1\xB5,1\n", "line 4: byte 0xB5", Options{}},
 		{"not UTF-8 as told", headings + "capacitor,1\xB5,1\n", "line 2: byte 0xB5", Options{Encoding: "utf-8"}},
-		{"unknown encoding", headings, `unknown encoding "klingon": it is one of utf-8`, Options{Encoding: "klingon"}},
+		{"unknown encoding", headings, `unknown encoding "utf-9": it is one of utf-8`, Options{Encoding: "utf-9"}},
 		{"unsound delimiter", headings, "cannot divide cells", Options{Delimiter: '7'}},
 		{"no headings", "resistor,4k7,100\nresistor,1k,5\n", `no headings recognised in the first 100 lines with text (line 1 reads "resistor", "4k7", "100")`, Options{}},
 		{"prose", "Dear all,\nplease find the list attached.\n", "no headings recognised", Options{}},
