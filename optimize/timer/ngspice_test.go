@@ -4,11 +4,13 @@ import (
 	"bytes"
 	"fmt"
 	"math"
+	"math/rand/v2"
 	"os"
 	"os/exec"
 	"path/filepath"
 	"regexp"
 	"strconv"
+	"strings"
 	"testing"
 
 	"tickdrawer/inventory"
@@ -154,5 +156,104 @@ func TestTimesAgreeWithNgspice(t *testing.T) {
 	}
 	for _, circuit := range Circuits() {
 		t.Logf("%-17s worst deviation from ngspice %.5f %%", circuit.Slug, 100*worst[circuit.Slug])
+	}
+}
+
+// sweepEach is how many designs of each circuit the sweep draws; many where the
+// reference programs are required.
+func sweepEach() int {
+	if os.Getenv("TICKDRAWER_REFERENCES") == "required" {
+		return 40
+	}
+	return 8
+}
+
+func TestDesignsOfAllKindsAgreeWithNgspice(t *testing.T) {
+	needsNgspice(t)
+	const seed = 555
+	t.Logf("seed %d", seed)
+	random := rand.New(rand.NewPCG(seed, 0))
+	logarithmic := func(low, high float64) float64 { return low * math.Pow(high/low, random.Float64()) }
+	for _, circuit := range Circuits() {
+		worst, where := 0.0, ""
+		for drawn := 0; drawn < sweepEach(); {
+			device := devices[random.IntN(len(devices))]
+			supplyV, controlV := []float64{5, 9, 12, 15}[random.IntN(4)], 0.0
+			if random.IntN(4) == 0 {
+				controlV = supplyV * (.3 + .5*random.Float64())
+			}
+			c, err := device.Under(supplyV, []float64{0, 25, 27, 60}[random.IntN(4)], device.SourceMaxA*random.Float64(), controlV)
+			if err != nil {
+				t.Fatal(err)
+			}
+			v := Values{Farads: logarithmic(1e-9, 100e-6), Diode: [...]Diode{signal, {14.11e-9, 1.984, .034}, {31.7e-6, 1.373, .051}}[random.IntN(3)]}
+			for i := range circuit.Resistors {
+				v.Ohms[i] = logarithmic(470, 2e6)
+			}
+			if circuit.Diodes == 0 {
+				v.Diode = Diode{}
+			}
+			if !steers(circuit, &c, &v) {
+				continue
+			}
+			drawn++
+			for name, off := range deviations(t, circuit, &c, &v) {
+				if off = math.Abs(off); off > worst {
+					worst, where = off, fmt.Sprintf("%s of %v at %g V with %s", name, v, supplyV, device.Name)
+				}
+			}
+		}
+		t.Logf("%-17s worst deviation from ngspice over %d designs: %.5f %%, %s", circuit.Slug, sweepEach(), 100*worst, where)
+		if !(worst <= 1e-3) {
+			t.Errorf("%s: off by %.4f %%", circuit.Slug, 100*worst)
+		}
+	}
+}
+
+func TestEveryPartOfANetworkIsAnElementOfItsOwn(t *testing.T) {
+	leaf := func(kind inventory.Kind, value float64) optimize.Network {
+		return optimize.Network{Lot: inventory.Lot{Part: inventory.Part{Kind: kind, Value: value}}}
+	}
+	r, c := inventory.Resistor, inventory.Capacitor
+	placed := []optimize.Placed{
+		{Position: "ra", Kind: r, Network: optimize.Network{Operator: optimize.Series, Members: []optimize.Network{
+			leaf(r, 4.7e3), {Operator: optimize.Parallel, Members: []optimize.Network{leaf(r, 10e3), leaf(r, 1e6)}}}}},
+		{Position: "rb", Kind: r, Network: leaf(r, 22e3)},
+		{Position: "c", Kind: c, Network: optimize.Network{Operator: optimize.Parallel, Members: []optimize.Network{
+			leaf(c, 10e-9), {Operator: optimize.Series, Members: []optimize.Network{leaf(c, 4.7e-9), leaf(c, 1e-9)}}}}},
+	}
+	conditions := under(t, &Ideal, 5)
+	netlist := Netlist(&classic, &conditions, placed, Diode{})
+	for _, element := range []string{
+		"Rra_1 vcc ra_1 4700\n", "Rra_2 ra_1 dis 10000\n", "Rra_3 ra_1 dis 1e+06\n", "Rrb dis cap 22000\n",
+		"C_1 cap 0 1e-08 ic=0\n", "C_2 cap cap_1 4.7e-09 ic=0\n", "C_3 cap_1 0 1e-09 ic=0\n",
+	} {
+		if !strings.Contains(netlist, element) {
+			t.Errorf("no %q in\n%s", element, netlist)
+		}
+	}
+	needsNgspice(t)
+	measured := simulate(t, netlist, "th", "tl", "tp", "first")
+	ra, farads := 4.7e3+10e3*1e6/1.01e6, 10e-9+4.7e-9*1e-9/5.7e-9
+	within(t, "high", measured["th"], math.Ln2*(ra+22e3)*farads, 1e-4)
+	within(t, "low", measured["tl"], math.Ln2*22e3*farads, 1e-4)
+	within(t, "period", measured["tp"], math.Ln2*(ra+44e3)*farads, 1e-4)
+	within(t, "first", measured["first"], math.Log(3)*(ra+22e3)*farads, 1e-4)
+}
+
+func TestANetlistOfACircuitThatStallsIsStillWritten(t *testing.T) {
+	c := under(t, DeviceByName("NE555"), 5)
+	v := Values{Ohms: [3]float64{10e3}, Farads: 1e-6}
+	netlist := Netlist(&outputFed, &c, placedValues(&outputFed, &v), Diode{})
+	if strings.Contains(netlist, "NaN") || strings.Contains(netlist, "Inf") {
+		t.Error(netlist)
+	}
+	needsNgspice(t)
+	path := filepath.Join(t.TempDir(), "stalls.cir")
+	if err := os.WriteFile(path, []byte(netlist), 0o600); err != nil {
+		t.Fatal(err)
+	}
+	if out, _ := exec.Command("ngspice", "-n", "-b", path).CombinedOutput(); !bytes.Contains(out, []byte("failed")) {
+		t.Errorf("ngspice finds an oscillation:\n%s", out)
 	}
 }
