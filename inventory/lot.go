@@ -64,14 +64,15 @@ type MovementID int64
 
 // Movement is one line of the ledger: it is never changed or deleted.
 type Movement struct {
-	ID     MovementID
-	At     time.Time // UTC
-	Who    string
-	Kind   MovementKind
-	Lot    LotID
-	Part   Part   // the lot's part, for reading the line
-	Bin    string // the lot's bin
-	Delta  int64  // pieces, positive in, negative out, never 0
-	Kit    KitID  // 0 where no kit is concerned
-	Source string // the file that an import came from
+	ID      MovementID
+	At      time.Time // UTC
+	Who     string
+	Kind    MovementKind
+	Lot     LotID
+	Part    Part   // the lot's part, for reading the line
+	Bin     string // the lot's bin
+	Delta   int64  // pieces, positive in, negative out, never 0
+	Balance int64  // pieces on hand in the lot afterwards
+	Kit     KitID  // 0 where no kit is concerned
+	Source  string // the file that an import came from
 }

@@ -78,5 +78,6 @@ type Plan struct {
 	Variants  []Variant
 	Picks     []PlannedPick // sorted by bin, then lot
 	Shortages []Shortage
+	Warnings  []string // on the fixed lines; each fit carries its own
 	Search    Search
 }

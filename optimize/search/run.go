@@ -77,6 +77,7 @@ func prepare(spec optimize.Spec, lots []inventory.Lot) (*stage, optimize.Front, 
 	for _, piece := range resistors {
 		s.uses = append(s.uses, piece.Uses)
 	}
+	s.drift = drift(lots, spec.Ambient)
 	for n := 1; n < len(s.resistors); n++ {
 		front.Search.Resistor += s.resistors[n].Len()
 	}
@@ -116,16 +117,9 @@ func (s *stage) fit(c *candidate) optimize.Fit {
 	if c.setup.inverter != nil {
 		f.Inverter = take(c.setup.inverter.Lot())
 	}
-	place := func(position string, kind inventory.Kind, count int, n optimize.Network) {
-		n.Lots(func(lot inventory.Lot) { take(lot) })
-		f.Networks = append(f.Networks, optimize.Placed{Position: position, Kind: kind, Count: count, Network: n})
-	}
-	for i, position := range c.setup.circuit.Resistors {
-		place(position, inventory.Resistor, 1, s.resistors[c.ohms[i].parts].Network(int(c.ohms[i].row)))
-	}
-	place("c", inventory.Capacitor, 1, s.capacitors[c.farad.parts].Network(int(c.farad.row)))
-	if c.setup.diodes != nil {
-		place("d", inventory.Diode, c.setup.circuit.Diodes, optimize.Network{Lot: c.setup.diodes.Lot()})
+	f.Networks = s.placed(c)
+	for _, placed := range f.Networks {
+		placed.Network.Lots(func(lot inventory.Lot) { take(lot) })
 	}
 	values := s.values(c)
 	f.Nominal = timesOf(c.setup.circuit, c.setup.circuit.Phases(&c.setup.conditions, &values))
@@ -133,7 +127,9 @@ func (s *stage) fit(c *candidate) optimize.Fit {
 		f.Nominal.FirstHighS = c.setup.circuit.FirstHighS(&c.setup.conditions, &values)
 	}
 	f.UsedNominal = s.spec.AllowanceUsed(f.Nominal)
-	s.addWorstCase(c, &f)
+	f.WorstCase = s.worstCase(c)
+	f.UsedWorst = s.spec.WorstAllowanceUsed(f.WorstCase)
+	f.Warnings = s.warnings(c, &f)
 	return f
 }
 

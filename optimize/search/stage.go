@@ -9,6 +9,7 @@ import (
 	"tickdrawer/inventory"
 	"tickdrawer/optimize"
 	"tickdrawer/optimize/network"
+	"tickdrawer/optimize/spread"
 	"tickdrawer/optimize/timer"
 )
 
@@ -25,6 +26,7 @@ type setup struct {
 	parts      int            // besides the networks: diodes and inverter
 	cost       inventory.Micros
 	order      []int // resistor positions, in the order in which they are assigned
+	evaluator  *spread.Evaluator
 }
 
 // stage is a spec with the tables that it is searched in.
@@ -33,9 +35,11 @@ type stage struct {
 	resistors  []*network.Table // by number of parts; [0] is nil
 	capacitors []*network.Table
 	setups     []setup
-	uses       []int64 // by resistor piece: most that one board may take
-	accept     func(*candidate) bool
-	judge      func(*candidate, optimize.Times) float64 // allowance used by the basis; nil: nominal
+	uses       []int64                  // by resistor piece: most that one board may take
+	judge      func(*candidate) float64 // allowance used by the basis; nil: nominal
+	drift      float64                  // by how much the judged times may lie beside the nominal ones
+	ohmBands   bands                    // by resistor network
+	faradBands bands
 }
 
 // walk is one pass over the tables of a setup.
@@ -202,27 +206,29 @@ func (w *walk) choose(depth, row int) {
 
 // leaf offers the candidate at hand if it meets the spec from stock.
 func (w *walk) leaf(cost inventory.Micros) {
-	phases := w.circuit.Phases(&w.conditions, &w.low)
-	times := timesOf(w.circuit, phases)
-	used := w.spec.AllowanceUsed(times)
-	if !(used <= 1+tie) {
-		return
-	}
 	limit := w.into.limit(w.at.parts, cost)
-	if limit < 0 || used > limit+tie || !w.enough() {
+	if limit < 0 {
 		return
 	}
 	found := w.at
 	found.cost = cost
-	found.used = used
-	if w.judge != nil {
-		if found.used = w.judge(&found, times); !(found.used <= min(1, limit)+tie) {
-			return
-		}
+	phases := w.circuit.Phases(&w.conditions, &w.low)
+	if w.judge == nil {
+		found.used = w.spec.AllowanceUsed(timesOf(w.circuit, phases))
+	} else if high, low := w.drifted(phases); !w.windowsOf(limit).misses(high, low, w.circuit.OneShot) {
+		found.used = w.judge(&found)
+	} else {
+		return
 	}
-	if w.accept == nil || w.accept(&found) {
+	if found.used <= min(1, limit)+tie && w.enough() && w.safe(&found) {
 		w.into.offer(found)
 	}
+}
+
+// drifted returns the spans about the phases that judged times may lie beside.
+func (s *stage) drifted(phases timer.Phases) (high, low span) {
+	around := func(t float64) span { return span{t * (1 - s.drift), t * (1 + s.drift)} }
+	return around(phases.HighS), around(phases.LowS)
 }
 
 // timesOf returns the phases as times of the circuit's kind.
@@ -258,14 +264,23 @@ func (w *walk) enough() bool {
 	return true
 }
 
-// hopeless reports whether no fit in the box uses at most the share of the
-// allowance.
-func (w *walk) hopeless(share float64) bool {
+// windowsOf returns the windows of the share of the allowance.
+func (w *walk) windowsOf(share float64) *windows {
 	if share != w.windows.share {
 		w.windows = windowsAt(&w.spec, share)
 	}
+	return &w.windows
+}
+
+// hopeless reports whether no fit in the box uses at most the share of the
+// allowance.
+func (w *walk) hopeless(share float64) bool {
 	high, low := w.phaseSpans()
-	return w.windows.misses(high, low, w.circuit.OneShot)
+	if w.judge != nil {
+		high = span{high.low * (1 - w.drift), high.high * (1 + w.drift)}
+		low = span{low.low * (1 - w.drift), low.high * (1 + w.drift)}
+	}
+	return w.windowsOf(share).misses(high, low, w.circuit.OneShot)
 }
 
 // phaseSpans returns the bounds of the two phases over the box, from the corners

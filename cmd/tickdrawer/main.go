@@ -1,0 +1,40 @@
+// Command tickdrawer finds which parts to take from which bin for boards of
+// timers (flashers, tones, delays, pulses): stock comes in from CSV, an exact
+// search finds the networks that meet the timing, and the picks are booked.
+package main
+
+import (
+	"context"
+	"os"
+	"os/signal"
+	"os/user"
+	"syscall"
+	"time"
+
+	"golang.org/x/term"
+)
+
+func main() { os.Exit(mainStatus()) }
+
+// mainStatus runs the program as its process does and returns its exit status.
+func mainStatus() int {
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	defer stop()
+	p := program{
+		in: os.Stdin, out: os.Stdout, errOut: os.Stderr,
+		env: os.Getenv, now: time.Now, who: userName(), width: 100,
+	}
+	if columns, _, err := term.GetSize(int(os.Stdout.Fd())); err == nil && columns > 0 {
+		p.width = columns
+		p.colour = os.Getenv("NO_COLOR") == "" && os.Getenv("TERM") != "dumb"
+	}
+	return p.run(ctx, os.Args[1:])
+}
+
+// userName returns who books: the login name.
+func userName() string {
+	if u, err := user.Current(); err == nil && u.Username != "" {
+		return u.Username
+	}
+	return "unknown"
+}
