@@ -278,10 +278,10 @@ func (p *program) printImport(document importDocument, booking sqlite.Booking, f
 	p.printTable(columns, rows)
 	what := "booked"
 	if flags.dryRun {
-		what = "would be booked (dry run: nothing was changed)"
+		what = "dry run, nothing was changed; would book"
 	}
 	p.printf("")
-	p.printf("%s into %s %s", counted(booking.QuantityBooked, "piece"), p.drawerPath(), what)
+	p.printf("%s %s into %s", what, counted(booking.QuantityBooked, "piece"), p.drawerPath())
 	p.printf("new lots: %d", booking.LotsCreated)
 	if booking.Movements > 0 && !flags.dryRun {
 		p.printf("movements: %d to %d", booking.First, booking.Last)

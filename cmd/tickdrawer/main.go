@@ -8,6 +8,8 @@ import (
 	"os"
 	"os/signal"
 	"os/user"
+	"path/filepath"
+	"strings"
 	"syscall"
 	"time"
 
@@ -22,7 +24,11 @@ func mainStatus() int {
 	defer stop()
 	p := program{
 		in: os.Stdin, out: os.Stdout, errOut: os.Stderr,
-		env: os.Getenv, now: time.Now, who: userName(), width: 100,
+		env: os.Getenv, now: time.Now, who: userName(), width: unlimited,
+		name: "tickdrawer",
+	}
+	if strings.Contains(filepath.ToSlash(os.Args[0]), "/go-build") { // go run
+		p.name = "go run ./cmd/tickdrawer"
 	}
 	if columns, _, err := term.GetSize(int(os.Stdout.Fd())); err == nil && columns > 0 {
 		p.width = columns
@@ -30,6 +36,10 @@ func mainStatus() int {
 	}
 	return p.run(ctx, os.Args[1:])
 }
+
+// unlimited is the width of output that no terminal shows: nothing wraps, so that
+// a line stays a line for grep.
+const unlimited = 1 << 15
 
 // userName returns who books: the login name.
 func userName() string {

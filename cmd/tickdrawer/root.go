@@ -31,8 +31,9 @@ type program struct {
 	env         func(string) string
 	now         func() time.Time
 	who         string
-	width       int  // of the terminal, in cells
-	colour      bool // the terminal shows it and the person wants it
+	name        string // how a person starts the program
+	width       int    // of the terminal, in cells
+	colour      bool   // the terminal shows it and the person wants it
 
 	drawerFlag string
 	json       bool
@@ -145,6 +146,18 @@ func (p *program) drawerPath() string {
 		return filepath.Join(home, "tickdrawer", "stock.drawer")
 	}
 	return filepath.Join(xdg.DataHome, "tickdrawer", "stock.drawer")
+}
+
+// invocation returns how a person starts the program with this drawer.
+func (p *program) invocation() string {
+	if p.drawerFlag == "" {
+		return p.name
+	}
+	drawer := p.drawerFlag
+	if strings.ContainsAny(drawer, " '\"$&;()<>|*?#\\") {
+		drawer = "'" + strings.ReplaceAll(drawer, "'", `'\''`) + "'"
+	}
+	return p.name + " --drawer " + drawer
 }
 
 // openDrawer opens the drawer; the caller closes it.

@@ -186,7 +186,7 @@ func places(stage optimize.Stage, f *optimize.Fit) []optimize.Place {
 		for i, lot := range lots {
 			name := base
 			if len(lots) > 1 {
-				name += string(rune('a' + i))
+				name = member(base, i)
 			}
 			found = append(found, optimize.Place{Reference: name, Position: placed.Position, Lot: lot})
 		}
@@ -198,6 +198,16 @@ func places(stage optimize.Stage, f *optimize.Fit) []optimize.Place {
 		found = append(found, optimize.Place{Reference: reference(stage, "timer"), Position: "timer", Lot: *f.TimerLot})
 	}
 	return found
+}
+
+// member returns the reference of one of several pieces at a place: R1a, R1b, or
+// fog.rb-a where no designator ends in a digit.
+func member(base string, i int) string {
+	letter := string(rune('a' + i))
+	if last := base[len(base)-1]; last >= '0' && last <= '9' {
+		return base + letter
+	}
+	return base + "-" + letter
 }
 
 func reference(stage optimize.Stage, position string) string {

@@ -12,6 +12,9 @@ import (
 // kept in a fixed array of this length.
 const MaxParts = 12
 
+// MaxNetworks is the most networks that a forest holds: about a gigabyte.
+const MaxNetworks = 16_000_000
+
 // Piece is a lot as networks draw on it.
 type Piece struct {
 	Lot  inventory.Lot
@@ -40,7 +43,9 @@ type Forest struct {
 
 // Grow returns the forest of every network of up to maxParts pieces. Pieces are
 // of one kind, resistors or capacitors, with a positive value; polarised
-// capacitors never stand in series. The order of the pieces decides ties.
+// capacitors never stand in series. The order of the pieces decides ties. The
+// error (inventory.Invalid) says what is no piece, or that there are more than
+// MaxNetworks networks.
 func Grow(pieces []Piece, maxParts int) (*Forest, error) {
 	if maxParts < 1 || maxParts > MaxParts {
 		return nil, fmt.Errorf("a network has 1 to %d parts, not %d", MaxParts, maxParts)
@@ -65,15 +70,17 @@ func Grow(pieces []Piece, maxParts int) (*Forest, error) {
 	}
 	f.start = append(f.start, len(f.nodes))
 	for n := 2; n <= maxParts; n++ {
-		f.join(optimize.Series, n)
-		f.join(optimize.Parallel, n)
+		if !f.join(optimize.Series, n) || !f.join(optimize.Parallel, n) {
+			return nil, inventory.Errorf(inventory.Invalid, "%d lots form more than %d networks of %d parts: allow fewer parts in a position", len(pieces), MaxNetworks, n)
+		}
 		f.start = append(f.start, len(f.nodes))
 	}
 	return f, nil
 }
 
-// join appends every network of n parts whose outer operator is the given one.
-func (f *Forest) join(operator optimize.Operator, n int) {
+// join appends every network of n parts whose outer operator is the given one
+// and reports whether they stay within MaxNetworks.
+func (f *Forest) join(operator optimize.Operator, n int) bool {
 	for h := 1; h <= n/2; h++ {
 		for head := f.start[h]; head < f.start[h+1]; head++ {
 			if f.nodes[head].operator == operator || !f.joinable(head, operator) {
@@ -90,8 +97,12 @@ func (f *Forest) join(operator optimize.Operator, n int) {
 				}
 				f.nodes = append(f.nodes, f.joined(operator, head, tail))
 			}
+			if len(f.nodes) > MaxNetworks {
+				return false
+			}
 		}
 	}
+	return true
 }
 
 func (f *Forest) joined(operator optimize.Operator, head, tail int) node {

@@ -120,11 +120,8 @@ func (s *stage) warnings(c *candidate, f *optimize.Fit) []string {
 	if f.NeedsInverter && f.Inverter == nil {
 		warnings = append(warnings, "the circuit needs an inverter, and none is in the drawer")
 	}
-	for i := range f.Networks {
-		placed := &f.Networks[i]
-		if placed.Kind != inventory.Diode && spread.Unstated(&placed.Network) {
-			warnings = append(warnings, fmt.Sprintf("a part in %s states no tolerance: the worst case takes it as exact", placed.Position))
-		}
+	if note := spread.UnstatedNote(f.Networks); note != "" {
+		warnings = append(warnings, note)
 	}
 	values := s.spreadOf(c)
 	if why := c.setup.evaluator.Stalls(&values); why != "" {
