@@ -2,7 +2,11 @@ package allot
 
 import (
 	"context"
+	"errors"
+	"fmt"
+	"runtime"
 	"slices"
+	"sync"
 
 	"tickdrawer/inventory"
 	"tickdrawer/optimize"
@@ -61,20 +65,16 @@ type choice struct {
 func chooseFits(ctx context.Context, stages []optimize.Stage, lots []inventory.Lot, boards int64) (choice, error) {
 	stock := newStock(lots)
 	for length := firstList; ; length *= 4 {
-		lists := make([]listed, len(stages))
+		lists, err := listFits(ctx, stages, lots, boards, length)
+		if err != nil {
+			return choice{}, err
+		}
 		complete := true
-		for i, stage := range stages {
-			spec := stage.Spec
-			spec.Boards = boards
-			fits, all, err := search.Best(ctx, spec, lots, length)
-			if err != nil {
-				return choice{}, err
-			}
-			if len(fits) == 0 {
+		for _, list := range lists {
+			if len(list.fits) == 0 {
 				return choice{proven: true}, nil
 			}
-			lists[i] = listed{fits, all}
-			complete = complete && all
+			complete = complete && list.all
 		}
 		c := combination{stages: stages, lists: lists, stock: stock, boards: boards}
 		c.solve()
@@ -83,6 +83,29 @@ func chooseFits(ctx context.Context, stages []optimize.Stage, lots []inventory.L
 			return found, nil
 		}
 	}
+}
+
+// listFits returns the first fits of every stage, the stages side by side on the
+// processors there are.
+func listFits(ctx context.Context, stages []optimize.Stage, lots []inventory.Lot, boards int64, length int) ([]listed, error) {
+	lists := make([]listed, len(stages))
+	errs := make([]error, len(stages))
+	var wait sync.WaitGroup
+	turns := make(chan struct{}, runtime.GOMAXPROCS(0))
+	for i, stage := range stages {
+		wait.Go(func() {
+			turns <- struct{}{}
+			defer func() { <-turns }()
+			spec := stage.Spec
+			spec.Boards = boards
+			lists[i].fits, lists[i].all, errs[i] = search.Best(ctx, spec, lots, length)
+			if errs[i] != nil {
+				errs[i] = fmt.Errorf("stage %s: %w", stage.Name, errs[i])
+			}
+		})
+	}
+	wait.Wait()
+	return lists, errors.Join(errs...)
 }
 
 // combination is the search for one fit a stage over lists.

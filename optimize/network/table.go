@@ -112,6 +112,9 @@ func (f *Forest) appendPieces(number int, used []int32) []int32 {
 // Middle returns where a span of rows is halved.
 func Middle(from, to int) int { return from + (to-from+1)/2 }
 
+// Spans returns the size of an array indexed by the numbers of the table's spans.
+func (t *Table) Spans() int { return len(t.cheapest) }
+
 // CheapestIn returns the least cost of a network in the span with the number.
 func (t *Table) CheapestIn(span int) inventory.Micros { return t.cheapest[span] }
 

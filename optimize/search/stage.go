@@ -52,11 +52,19 @@ type walk struct {
 	high    timer.Values
 	tables  [timer.MaxResistors]*network.Table // of this class, by position
 	farads  *network.Table
-	windows windows // of the limit last asked for
+	windows windows         // of the limit last asked for
+	first   []phaseBounds   // of 1 F, by span of the first resistor's table
+	corners [4]timer.Values // scratch: values escape through Circuit.Phases
 	at      candidate
 	pieces  []int32 // scratch
 	visited int
 	stopped bool
+}
+
+// phaseBounds bounds both phases.
+type phaseBounds struct {
+	high, low span
+	known     bool
 }
 
 // class is how many parts each position has.
@@ -141,6 +149,9 @@ func (w *walk) search(c class) bool {
 	if w.farads.Len() == 0 {
 		return true
 	}
+	if len(w.order) > 0 {
+		w.first = make([]phaseBounds, w.tables[w.order[0]].Spans())
+	}
 	w.descend(-1, w.farads, rest, 1, 0, w.farads.Len())
 	return !w.stopped
 }
@@ -161,7 +172,7 @@ func (w *walk) descend(depth int, table *network.Table, others inventory.Micros,
 		return
 	}
 	limit := w.into.limit(w.at.parts, others+table.CheapestIn(span))
-	if limit < 0 || w.hopeless(limit) {
+	if limit < 0 || w.hopeless(limit, depth, span) {
 		return
 	}
 	if to-from == 1 {
@@ -215,7 +226,7 @@ func (w *walk) leaf(cost inventory.Micros) {
 	phases := w.circuit.Phases(&w.conditions, &w.low)
 	if w.judge == nil {
 		found.used = w.spec.AllowanceUsed(timesOf(w.circuit, phases))
-	} else if high, low := w.drifted(phases); !w.windowsOf(limit).misses(high, low, w.circuit.OneShot) {
+	} else if high, low := w.drifted(exactly(phases.HighS)), w.drifted(exactly(phases.LowS)); !w.windowsOf(limit).misses(high, low, w.circuit.OneShot) {
 		found.used = w.judge(&found)
 	} else {
 		return
@@ -225,10 +236,9 @@ func (w *walk) leaf(cost inventory.Micros) {
 	}
 }
 
-// drifted returns the spans about the phases that judged times may lie beside.
-func (s *stage) drifted(phases timer.Phases) (high, low span) {
-	around := func(t float64) span { return span{t * (1 - s.drift), t * (1 + s.drift)} }
-	return around(phases.HighS), around(phases.LowS)
+// drifted widens the span of a nominal phase to where judged times may lie.
+func (s *stage) drifted(phase span) span {
+	return span{phase.low * (1 - s.drift), phase.high * (1 + s.drift)}
 }
 
 // timesOf returns the phases as times of the circuit's kind.
@@ -274,52 +284,71 @@ func (w *walk) windowsOf(share float64) *windows {
 
 // hopeless reports whether no fit in the box uses at most the share of the
 // allowance.
-func (w *walk) hopeless(share float64) bool {
-	high, low := w.phaseSpans()
+func (w *walk) hopeless(share float64, depth, span int) bool {
+	bounds := w.unitBounds(depth, span)
+	high := bounds.high.times(w.faradSpan())
+	low := bounds.low.times(w.faradSpan())
 	if w.judge != nil {
-		high = span{high.low * (1 - w.drift), high.high * (1 + w.drift)}
-		low = span{low.low * (1 - w.drift), low.high * (1 + w.drift)}
+		high, low = w.drifted(high), w.drifted(low)
 	}
 	return w.windowsOf(share).misses(high, low, w.circuit.OneShot)
 }
 
-// phaseSpans returns the bounds of the two phases over the box, from the corners
-// that the circuit's trends name.
-func (w *walk) phaseSpans() (high, low span) {
-	circuit := w.circuit
-	shortHigh, known := w.corner(circuit.HighTrend, -1)
-	longHigh, _ := w.corner(circuit.HighTrend, +1)
-	atShort := circuit.Phases(&w.conditions, &shortHigh)
-	atLong := circuit.Phases(&w.conditions, &longHigh)
-	high = span{atShort.HighS, atLong.HighS}
-	if !known {
-		high = span{0, math.Inf(1)}
+func (w *walk) faradSpan() span { return span{w.low.Farads, w.high.Farads} }
+
+// unitBounds returns the bounds of the phases over the resistors' box for 1 F:
+// every phase is proportional to the capacitance. Those of the first resistor's
+// spans come back for every capacitor, so they are kept.
+func (w *walk) unitBounds(depth, span int) phaseBounds {
+	switch depth {
+	case -1:
+		depth, span = 0, 1 // no resistor is assigned: all of the first one's table
+		fallthrough
+	case 0:
+		if bounds := &w.first[span]; bounds.known {
+			return *bounds
+		}
+		w.first[span] = w.phaseBounds()
+		return w.first[span]
 	}
-	if circuit.OneShot {
-		return high, span{}
-	}
-	shortLow, known := w.corner(circuit.LowTrend, -1)
-	longLow, _ := w.corner(circuit.LowTrend, +1)
-	if shortLow != shortHigh {
-		atShort = circuit.Phases(&w.conditions, &shortLow)
-	}
-	if longLow != longHigh {
-		atLong = circuit.Phases(&w.conditions, &longLow)
-	}
-	low = span{atShort.LowS, atLong.LowS}
-	if !known {
-		low = span{0, math.Inf(1)}
-	}
-	return high, low
+	return w.phaseBounds()
 }
 
-// corner returns the values of the box at which a phase with the trend is
-// shortest (towards -1) or longest (+1), and whether the trend is known.
-func (w *walk) corner(trend timer.Trend, towards int8) (values timer.Values, known bool) {
-	values = w.low
-	if towards > 0 {
-		values.Farads = w.high.Farads
+// phaseBounds returns the bounds of the phases over the box for 1 F, from the
+// corners that the circuit's trends name.
+func (w *walk) phaseBounds() phaseBounds {
+	circuit, at := w.circuit, &w.corners
+	bounds := phaseBounds{high: anything(), low: anything(), known: true}
+	known := w.corner(&at[0], circuit.HighTrend, -1)
+	w.corner(&at[1], circuit.HighTrend, +1)
+	atShort := circuit.Phases(&w.conditions, &at[0])
+	atLong := circuit.Phases(&w.conditions, &at[1])
+	if known {
+		bounds.high = span{atShort.HighS, atLong.HighS}
 	}
+	if circuit.OneShot {
+		return bounds
+	}
+	known = w.corner(&at[2], circuit.LowTrend, -1)
+	w.corner(&at[3], circuit.LowTrend, +1)
+	if at[2] != at[0] {
+		atShort = circuit.Phases(&w.conditions, &at[2])
+	}
+	if at[3] != at[1] {
+		atLong = circuit.Phases(&w.conditions, &at[3])
+	}
+	if known {
+		bounds.low = span{atShort.LowS, atLong.LowS}
+	}
+	return bounds
+}
+
+// corner sets values to the corner of the resistors' box at which a phase with
+// the trend is shortest (towards -1) or longest (+1), with 1 F, and reports
+// whether the trend is known.
+func (w *walk) corner(values *timer.Values, trend timer.Trend, towards int8) (known bool) {
+	*values = w.low
+	values.Farads = 1
 	known = true
 	for i := range w.circuit.Resistors {
 		switch trend[i] {
@@ -330,5 +359,5 @@ func (w *walk) corner(trend timer.Trend, towards int8) (values timer.Values, kno
 			known = known && w.low.Ohms[i] == w.high.Ohms[i]
 		}
 	}
-	return values, known
+	return known
 }

@@ -13,6 +13,8 @@ const outward = 1e-12
 // span is a lower and an upper bound of a quantity that is never negative.
 type span struct{ low, high float64 }
 
+func exactly(x float64) span { return span{x, x} }
+
 func anything() span { return span{0, math.Inf(1)} }
 
 func (s span) widened() span { return span{s.low * (1 - outward), s.high * (1 + outward)} }
