@@ -170,9 +170,6 @@ func (p *program) runKit(ctx context.Context, name string, flags kitFlags) error
 		if format, err = picks.ForFile(flags.output); err != nil {
 			return usageError{err}
 		}
-		if _, err := os.Stat(flags.output); err == nil {
-			return fmt.Errorf("%s exists already and is not replaced: name a new file", flags.output)
-		}
 	}
 	drawer, err := p.openDrawer(ctx, false)
 	if err != nil {
@@ -188,19 +185,21 @@ func (p *program) runKit(ctx context.Context, name string, flags kitFlags) error
 		return err
 	}
 	document := documentOfPlan(plan)
+	// The file's name is taken before the kit is kept, so that neither stands
+	// without the other; its content names the kit.
 	if flags.output != "" {
-		content, err := p.renderPicks(format, plan)
-		if err != nil {
-			return err
-		}
-		if err := writeNew(flags.output, content); err != nil {
+		if err := writeNew(flags.output, nil); err != nil {
 			return err
 		}
 		document.Output = flags.output
 	}
-	if document.Kit, document.State, err = saveKit(ctx, drawer, plan, document, flags.reserve); err != nil {
+	document.Kit, document.State, err = saveKit(ctx, drawer, plan, document, flags.reserve)
+	if err == nil && flags.output != "" {
+		err = p.writePicks(flags.output, format, plan, document.Kit)
+	}
+	if err != nil {
 		if flags.output != "" {
-			os.Remove(flags.output) // of a kit that does not exist
+			os.Remove(flags.output)
 		}
 		return err
 	}
@@ -231,12 +230,16 @@ func readJob(name string) (optimize.Job, error) {
 	return parsed.Job, nil
 }
 
-// renderPicks returns the picks as a workbook or as CSV.
-func (p *program) renderPicks(format picks.Format, plan optimize.Plan) ([]byte, error) {
-	if format == picks.CSV {
-		return picks.PicksCSV(plan), nil
+// writePicks fills the output file, which is empty still.
+func (p *program) writePicks(name string, format picks.Format, plan optimize.Plan, kit inventory.KitID) error {
+	content, err := format.Document(plan, picks.Options{Now: p.now(), Kit: kit})
+	if err == nil {
+		err = os.WriteFile(name, content, 0o644)
 	}
-	return picks.Workbook(plan, picks.Options{Now: p.now()})
+	if err != nil {
+		return fmt.Errorf("kit %d is kept, but %s cannot be written: %w", kit, name, systemReason(err))
+	}
+	return nil
 }
 
 // saveKit keeps the plan in the drawer, and holds its picks where asked.

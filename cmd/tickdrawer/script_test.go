@@ -97,10 +97,10 @@ func lookUp(at any, path string) (any, bool) {
 			at = list[index]
 		default:
 			object, ok := at.(map[string]any)
-			if at, ok = object[step], ok; !ok {
+			if !ok {
 				return nil, false
 			}
-			if _, present := object[step]; !present {
+			if at, ok = object[step]; !ok {
 				return nil, false
 			}
 		}
