@@ -43,6 +43,9 @@ type Circuit struct {
 
 	// Phases returns the durations under the conditions; it allocates nothing.
 	Phases func(*Conditions, *Values) Phases
+	// HighS and LowS return the one and the other alone, s. The low time of a
+	// one-shot is 0.
+	HighS, LowS func(*Conditions, *Values) float64
 	// FirstHighS returns the first high time from an empty capacitor, s; 0 for
 	// a one-shot, +Inf where it never ends.
 	FirstHighS func(*Conditions, *Values) float64
@@ -55,6 +58,9 @@ type Circuit struct {
 	// wire writes the circuit's elements around the timer (netlist.go).
 	wire func(*netlist)
 }
+
+// noLowS is the low time of a one-shot.
+func noLowS(*Conditions, *Values) float64 { return 0 }
 
 // rampS returns the time in which a source of vth behind rth ohm moves farads
 // from v0 to v1, s; +Inf where it cannot. t = R C ln((Vth-v0)/(Vth-v1)), the

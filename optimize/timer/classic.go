@@ -8,6 +8,8 @@ var classic = Circuit{
 	HighTrend:  Trend{+1, +1},
 	LowTrend:   Trend{-1, +1},
 	Phases:     classicPhases,
+	HighS:      classicHighS,
+	LowS:       classicLowS,
 	FirstHighS: classicFirstHighS,
 	Stalls:     classicStalls,
 	currents:   classicCurrents,
@@ -17,12 +19,16 @@ var classic = Circuit{
 // classicPhases returns, for the ideal timer, HighS = ln2 (RA+RB) C and
 // LowS = ln2 RB C.
 func classicPhases(c *Conditions, v *Values) Phases {
-	ra, rb := v.Ohms[0], v.Ohms[1]
-	vth, rth := pulledDown(c, ra, rb, 0)
-	return Phases{
-		HighS: rampS(c.SupplyV, ra+rb, v.Farads, c.LowLevelV, c.HighLevelV),
-		LowS:  rampS(vth, rth, v.Farads, c.HighLevelV, c.LowLevelV),
-	}
+	return Phases{HighS: classicHighS(c, v), LowS: classicLowS(c, v)}
+}
+
+func classicHighS(c *Conditions, v *Values) float64 {
+	return rampS(c.SupplyV, v.Ohms[0]+v.Ohms[1], v.Farads, c.LowLevelV, c.HighLevelV)
+}
+
+func classicLowS(c *Conditions, v *Values) float64 {
+	vth, rth := pulledDown(c, v.Ohms[0], v.Ohms[1], 0)
+	return rampS(vth, rth, v.Farads, c.HighLevelV, c.LowLevelV)
 }
 
 func classicFirstHighS(c *Conditions, v *Values) float64 {

@@ -11,10 +11,11 @@ var classicInverted = Circuit{
 	HighTrend: classic.LowTrend,
 	LowTrend:  classic.HighTrend,
 	Phases: func(c *Conditions, v *Values) Phases {
-		p := classicPhases(c, v)
-		return Phases{HighS: p.LowS, LowS: p.HighS}
+		return Phases{HighS: classicLowS(c, v), LowS: classicHighS(c, v)}
 	},
-	FirstHighS: func(c *Conditions, v *Values) float64 { return classicPhases(c, v).LowS },
+	HighS:      classicLowS,
+	LowS:       classicHighS,
+	FirstHighS: classicLowS,
 	Stalls:     classicStalls,
 	currents:   classicCurrents,
 	wire: func(n *netlist) {

@@ -3,6 +3,7 @@ package timer
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"tickdrawer/inventory/marking"
 )
@@ -10,6 +11,10 @@ import (
 // Stated is a figure of a data sheet, at 25 °C. Zero is a figure that the sheet
 // does not state.
 type Stated struct{ Typ, Max float64 }
+
+// Largest returns the greatest figure stated: the typical one where it is the
+// only one.
+func (s Stated) Largest() float64 { return max(s.Typ, s.Max) }
 
 // Drop is one stated point of an output or a switch: how far it stays from its
 // rail at a supply and a current.
@@ -91,7 +96,7 @@ func (d *Device) Extremes(supplyV, ambientC, loadA, controlV float64) (least, mo
 	if least, err = d.under(supplyV, ambientC, loadA, controlV, smallest); err != nil {
 		return least, most, err
 	}
-	most, err = d.under(supplyV, ambientC, loadA, controlV, largest)
+	most, err = d.under(supplyV, ambientC, loadA, controlV, Stated.Largest)
 	return least, most, err
 }
 
@@ -145,12 +150,9 @@ type figure func(Stated) float64
 
 func typical(s Stated) float64 { return s.Typ }
 
-// largest returns the greatest figure, the typical one where no other is stated.
-func largest(s Stated) float64 { return max(s.Typ, s.Max) }
-
 // smallest returns the least figure: the sheets state none, so it is taken as far
 // below the typical one as the largest is above, and never below nothing.
-func smallest(s Stated) float64 { return max(0, 2*s.Typ-largest(s)) }
+func smallest(s Stated) float64 { return max(0, 2*s.Typ-s.Largest()) }
 
 // saturated returns a saturated output or switch as a voltage behind a
 // resistance. A CMOS one is a resistance through the origin (common practice, no
@@ -194,10 +196,16 @@ func (d *Device) pullUp(supplyV, loadA float64, of figure) (dropV, ohm float64) 
 			ohm = of(p[0].DropV) / p[0].CurrentA
 			return ohm * loadA, ohm
 		}
-		dropV = of(p[0].DropV)
+		stated := of(p[0].DropV)
+		dropV = stated
 		for i := 1; i < len(p) && loadA > p[i-1].CurrentA; i++ {
-			ohm = (of(p[i].DropV) - of(p[i-1].DropV)) / (p[i].CurrentA - p[i-1].CurrentA)
-			dropV = of(p[i-1].DropV) + ohm*(loadA-p[i-1].CurrentA)
+			next := of(p[i].DropV)
+			if p[i].DropV.Max == 0 { // the spread of the point before
+				next = stated + p[i].DropV.Typ - p[i-1].DropV.Typ
+			}
+			ohm = (next - stated) / (p[i].CurrentA - p[i-1].CurrentA)
+			dropV = stated + ohm*(loadA-p[i-1].CurrentA)
+			stated = next
 		}
 		return dropV, ohm
 	})
@@ -231,6 +239,19 @@ func interpolate(points []Drop, supplyV float64, fit func([]Drop) (dropV, ohm fl
 		points = points[n:]
 	}
 	return dropV, ohm
+}
+
+// StatedSupplies returns the supplies at which any of the device's drops is
+// stated, V, ascending: between them the drops are interpolated.
+func (d *Device) StatedSupplies() []float64 {
+	var supplies []float64
+	for _, points := range [][]Drop{d.OutHigh, d.OutLow, d.Switch} {
+		for _, p := range points {
+			supplies = append(supplies, p.SupplyV)
+		}
+	}
+	slices.Sort(supplies)
+	return slices.Compact(supplies)
 }
 
 // highestA returns the largest current at which the drop is stated, 0 for none.

@@ -40,6 +40,15 @@ func (d Diode) at(ambientC float64) junction {
 	return j
 }
 
+// At returns the diode that is at 27 °C what d is at an ambient temperature: for
+// computing with many values at one temperature.
+func (d Diode) At(ambientC float64) Diode {
+	if d.SaturationA == 0 {
+		return d
+	}
+	return Diode{d.at(ambientC).saturationA, d.Ideality * (ambientC + zeroCelsiusK) / modelK, d.SeriesOhm}
+}
+
 // solveW returns the w ≥ 0 at which p (exp(w)-1) + q w = drop, for p ≥ 0,
 // q > 0, drop ≥ 0. The left side is convex and rising: from above its root
 // Newton's steps fall to it and never pass it.
@@ -48,12 +57,12 @@ func solveW(p, q, drop float64) float64 {
 	if p == 0 {
 		return min(high, largestW)
 	}
-	if byExponential := math.Log1p(drop / p); byExponential < high {
+	if byExponential := log1p(drop / p); byExponential < high {
 		high = byExponential
-		// One step of the fixed point lies near the root, on its left.
-		if w := math.Log1p(max(drop-q*high, 0) / p); w > 0 {
-			grown := expm1(w)
-			high = min(high, w+(drop-p*grown-q*w)/(p*grown+p+q))
+		// The fixed point w = ln(1 + (drop - q w)/p) alternates about the root: two
+		// steps from above are above again, and close where the resistance prevails.
+		if w := log1p(max(drop-q*high, 0) / p); w > 0 {
+			high = min(high, log1p((drop-q*w)/p))
 		}
 	}
 	w := min(high, largestW)
@@ -80,6 +89,14 @@ func expm1(w float64) float64 {
 	return math.Expm1(w)
 }
 
+// log1p returns ln(1+x), by the faster logarithm where nothing is lost.
+func log1p(x float64) float64 {
+	if x > 1 {
+		return math.Log(1 + x)
+	}
+	return math.Log1p(x)
+}
+
 // largestW keeps exp(w) finite where nothing but the junction limits the current.
 const largestW = 600
 
@@ -88,6 +105,10 @@ const largestW = 600
 // conducting diode passes with it, so the relative error is exp(-(x + w)); below
 // exp(-14), a millionth.
 const blockingW = 14
+
+// BlockingV returns the reverse voltage from which on the diode at 27 °C passes its
+// saturation current, to a millionth, V.
+func (d Diode) BlockingV() float64 { return blockingW * d.at(modelK-zeroCelsiusK).slopeV }
 
 // blocks reports whether the reverse biased diode behind other ohm passes its
 // saturation current, to a millionth of all that flows, while drop remains and

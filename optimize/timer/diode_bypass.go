@@ -10,14 +10,10 @@ var diodeBypass = Circuit{
 	HighTrend: Trend{+1, +1},
 	LowTrend:  Trend{-1, +1},
 	Phases: func(c *Conditions, v *Values) Phases {
-		ra, rb := v.Ohms[0], v.Ohms[1]
-		d := v.Diode.at(c.AmbientC)
-		junctionV, junctionOhm := pulledDown(c, ra, 0, 0)
-		return Phases{
-			HighS: d.bypassRampS(ra, rb, v.Farads, c.SupplyV-c.LowLevelV, c.SupplyV-c.HighLevelV),
-			LowS:  d.leakingRampS(junctionOhm, rb, v.Farads, c.HighLevelV-junctionV, c.LowLevelV-junctionV),
-		}
+		return Phases{HighS: bypassHighS(c, v), LowS: bypassLowS(c, v)}
 	},
+	HighS: bypassHighS,
+	LowS:  bypassLowS,
 	FirstHighS: func(c *Conditions, v *Values) float64 {
 		d := v.Diode.at(c.AmbientC)
 		return d.bypassRampS(v.Ohms[0], v.Ohms[1], v.Farads, c.SupplyV, c.SupplyV-c.HighLevelV)
@@ -38,4 +34,13 @@ var diodeBypass = Circuit{
 			stallsCharging(c, "ra charges the capacitor", c.SupplyV),
 			stallsPulledDown(c, v.Ohms[0]))
 	},
+}
+
+func bypassHighS(c *Conditions, v *Values) float64 {
+	return v.Diode.at(c.AmbientC).bypassRampS(v.Ohms[0], v.Ohms[1], v.Farads, c.SupplyV-c.LowLevelV, c.SupplyV-c.HighLevelV)
+}
+
+func bypassLowS(c *Conditions, v *Values) float64 {
+	junctionV, junctionOhm := pulledDown(c, v.Ohms[0], 0, 0)
+	return v.Diode.at(c.AmbientC).leakingRampS(junctionOhm, v.Ohms[1], v.Farads, c.HighLevelV-junctionV, c.LowLevelV-junctionV)
 }

@@ -85,6 +85,9 @@ func TestAHotDiodeLeaksMoreAndDropsLess(t *testing.T) {
 	if slope := (at(hot) - at(cold)) / 60; slope > -1e-3 || slope < -3e-3 {
 		t.Errorf("the drop changes by %g V/°C", slope)
 	}
+	if moved := d.At(60).at(27); !closeTo(moved.saturationA, hot.saturationA, 1e-14) || !closeTo(moved.slopeV, hot.slopeV, 1e-14) {
+		t.Errorf("moved to 27 °C it is %+v, at 60 °C %+v", moved, hot)
+	}
 	if at27 := d.at(27); at27.saturationA != d.SaturationA {
 		t.Errorf("at 27 °C IS is %g, not the model's", at27.saturationA)
 	}

@@ -18,13 +18,10 @@ var dischargeLimb = Circuit{
 	HighTrend: Trend{+1, +1, 0},
 	LowTrend:  Trend{-1, +1, +1},
 	Phases: func(c *Conditions, v *Values) Phases {
-		ra, rb := v.Ohms[0], v.Ohms[1]
-		vth, rth := pulledDown(c, ra, rb, v.Ohms[2])
-		return Phases{
-			HighS: rampS(c.SupplyV, ra+rb, v.Farads, c.LowLevelV, c.HighLevelV),
-			LowS:  rampS(vth, rth, v.Farads, c.HighLevelV, c.LowLevelV),
-		}
+		return Phases{HighS: classicHighS(c, v), LowS: limbLowS(c, v)}
 	},
+	HighS:      classicHighS,
+	LowS:       limbLowS,
 	FirstHighS: classicFirstHighS,
 	currents: func(c *Conditions, v *Values, capacitorV float64, high bool) currents {
 		return limbCurrents(c, v.Ohms[0], v.Ohms[1], v.Ohms[2], capacitorV, high)
@@ -44,6 +41,11 @@ var dischargeLimb = Circuit{
 		}
 		return noOscillation(stallsCharging(c, "ra and rb charge the capacitor", c.SupplyV), low)
 	},
+}
+
+func limbLowS(c *Conditions, v *Values) float64 {
+	vth, rth := pulledDown(c, v.Ohms[0], v.Ohms[1], v.Ohms[2])
+	return rampS(vth, rth, v.Farads, c.HighLevelV, c.LowLevelV)
 }
 
 // limbLimitOhm returns the rd at which the discharge of a discharge-limb circuit

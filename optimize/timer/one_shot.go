@@ -4,15 +4,14 @@ package timer
 // at rest and lets go of it, R charges it to the upper level. PulseS is HighS,
 // ln3 R C for the ideal timer.
 var oneShot = Circuit{
-	Slug:      "one-shot",
-	Title:     "one pulse after each trigger",
-	Resistors: []string{"r"},
-	OneShot:   true,
-	HighTrend: Trend{+1},
-	Phases: func(c *Conditions, v *Values) Phases {
-		rest, _ := pulledDown(c, v.Ohms[0], 0, 0)
-		return Phases{HighS: pulseS(c, v, rest)}
-	},
+	Slug:       "one-shot",
+	Title:      "one pulse after each trigger",
+	Resistors:  []string{"r"},
+	OneShot:    true,
+	HighTrend:  Trend{+1},
+	Phases:     func(c *Conditions, v *Values) Phases { return Phases{HighS: triggeredS(c, v)} },
+	HighS:      triggeredS,
+	LowS:       noLowS,
 	FirstHighS: func(*Conditions, *Values) float64 { return 0 },
 	Stalls:     pulseStalls,
 	// The discharge of the capacitor itself is left out: the switch limits it, and it
@@ -30,6 +29,13 @@ var oneShot = Circuit{
 		n.resistor("r", "vcc", "cap")
 		n.capacitor(0)
 	},
+}
+
+// triggeredS returns the pulse from the voltage at which the switch holds the
+// capacitor against r.
+func triggeredS(c *Conditions, v *Values) float64 {
+	rest, _ := pulledDown(c, v.Ohms[0], 0, 0)
+	return pulseS(c, v, rest)
 }
 
 // pulseS returns how long R takes to charge the capacitor from startV to the

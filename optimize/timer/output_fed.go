@@ -11,12 +11,10 @@ var outputFed = Circuit{
 	HighTrend: Trend{+1},
 	LowTrend:  Trend{+1},
 	Phases: func(c *Conditions, v *Values) Phases {
-		r := v.Ohms[0]
-		return Phases{
-			HighS: rampS(c.OutHighV, r+c.OutHighOhm, v.Farads, c.LowLevelV, c.HighLevelV),
-			LowS:  rampS(c.OutLowV, r+c.OutLowOhm, v.Farads, c.HighLevelV, c.LowLevelV),
-		}
+		return Phases{HighS: fedHighS(c, v), LowS: fedLowS(c, v)}
 	},
+	HighS: fedHighS,
+	LowS:  fedLowS,
 	FirstHighS: func(c *Conditions, v *Values) float64 {
 		return rampS(c.OutHighV, v.Ohms[0]+c.OutHighOhm, v.Farads, 0, c.HighLevelV)
 	},
@@ -40,4 +38,12 @@ func outputFedStalls(c *Conditions, _ *Values) string {
 	return noOscillation(
 		stallsCharging(c, "the output, high, charges the capacitor", c.OutHighV),
 		stallsDischarging(c, "the output, low, takes the capacitor", c.OutLowV))
+}
+
+func fedHighS(c *Conditions, v *Values) float64 {
+	return rampS(c.OutHighV, v.Ohms[0]+c.OutHighOhm, v.Farads, c.LowLevelV, c.HighLevelV)
+}
+
+func fedLowS(c *Conditions, v *Values) float64 {
+	return rampS(c.OutLowV, v.Ohms[0]+c.OutLowOhm, v.Farads, c.HighLevelV, c.LowLevelV)
 }

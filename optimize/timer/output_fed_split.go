@@ -10,12 +10,10 @@ var outputFedSplit = Circuit{
 	HighTrend: Trend{+1, 0},
 	LowTrend:  Trend{0, +1},
 	Phases: func(c *Conditions, v *Values) Phases {
-		d := v.Diode.at(c.AmbientC)
-		return Phases{
-			HighS: d.seriesRampS(v.Ohms[0], v.Ohms[1], c.OutHighOhm, v.Farads, c.OutHighV-c.LowLevelV, c.OutHighV-c.HighLevelV),
-			LowS:  d.seriesRampS(v.Ohms[1], v.Ohms[0], c.OutLowOhm, v.Farads, c.HighLevelV-c.OutLowV, c.LowLevelV-c.OutLowV),
-		}
+		return Phases{HighS: splitHighS(c, v), LowS: splitLowS(c, v)}
 	},
+	HighS: splitHighS,
+	LowS:  splitLowS,
 	FirstHighS: func(c *Conditions, v *Values) float64 {
 		d := v.Diode.at(c.AmbientC)
 		return d.seriesRampS(v.Ohms[0], v.Ohms[1], c.OutHighOhm, v.Farads, c.OutHighV, c.OutHighV-c.HighLevelV)
@@ -38,4 +36,12 @@ var outputFedSplit = Circuit{
 		n.diode("discharge", "out")
 		n.capacitor(0)
 	},
+}
+
+func splitHighS(c *Conditions, v *Values) float64 {
+	return v.Diode.at(c.AmbientC).seriesRampS(v.Ohms[0], v.Ohms[1], c.OutHighOhm, v.Farads, c.OutHighV-c.LowLevelV, c.OutHighV-c.HighLevelV)
+}
+
+func splitLowS(c *Conditions, v *Values) float64 {
+	return v.Diode.at(c.AmbientC).seriesRampS(v.Ohms[1], v.Ohms[0], c.OutLowOhm, v.Farads, c.HighLevelV-c.OutLowV, c.LowLevelV-c.OutLowV)
 }

@@ -9,7 +9,9 @@ var powerOnPulse = Circuit{
 	Resistors: []string{"r"},
 	OneShot:   true,
 	HighTrend: Trend{+1},
-	Phases:    func(c *Conditions, v *Values) Phases { return Phases{HighS: pulseS(c, v, 0)} },
+	Phases:    func(c *Conditions, v *Values) Phases { return Phases{HighS: powerOnS(c, v)} },
+	HighS:     powerOnS,
+	LowS:      noLowS,
 	currents: func(c *Conditions, v *Values, capacitorV float64, _ bool) currents {
 		return pulseCurrents(c, v, capacitorV)
 	},
@@ -21,3 +23,5 @@ var powerOnPulse = Circuit{
 	FirstHighS: func(*Conditions, *Values) float64 { return 0 },
 	Stalls:     pulseStalls,
 }
+
+func powerOnS(c *Conditions, v *Values) float64 { return pulseS(c, v, 0) }

@@ -116,19 +116,14 @@ func (r *rails) addSupply() {
 		r.add("supply", r.c.SupplyV < least, "the supply of %s is close to the least of %s that %s works from",
 			marking.FormatVolts(r.c.SupplyV), marking.FormatVolts(least), d.Name)
 	}
-	if low, high := statedSupplies(d); low > 0 && (r.c.SupplyV < low || r.c.SupplyV > high) {
+	stated := d.StatedSupplies()
+	if len(stated) == 0 {
+		return
+	}
+	if low, high := stated[0], stated[len(stated)-1]; r.c.SupplyV < low || r.c.SupplyV > high {
 		r.add("data", false, "the drops of %s are stated from %s to %s: at %s those of the nearest stated supply are used",
 			d.Name, marking.FormatVolts(low), marking.FormatVolts(high), marking.FormatVolts(r.c.SupplyV))
 	}
-}
-
-// statedSupplies returns the range of supplies at which the device's drops are
-// stated, V; 0, 0 where none are.
-func statedSupplies(d *Device) (low, high float64) {
-	if len(d.Switch) == 0 {
-		return 0, 0
-	}
-	return d.Switch[0].SupplyV, d.Switch[len(d.Switch)-1].SupplyV
 }
 
 // addMargin adds what is wary of phases that nearly stall.
@@ -207,7 +202,7 @@ func (r *rails) addDeviceCurrents() {
 // alone, so it is only warned of.
 func (r *rails) addInputCurrents() {
 	d := r.c.Device
-	threshold, trigger := largest(d.ThresholdA), largest(d.TriggerA)
+	threshold, trigger := d.ThresholdA.Largest(), d.TriggerA.Largest()
 	if threshold > 0 {
 		charging := r.circuit.currents(r.c, r.v, r.c.HighLevelV, true).capacitorA
 		switch needed := 2 * threshold; {
