@@ -19,5 +19,5 @@ func ExampleWorstCase() {
 		return
 	}
 	fmt.Printf("period %.2f ms to %.2f ms, duty %.4f to %.4f\n", 1e3*band.Period.Min, 1e3*band.Period.Max, band.Duty.Min, band.Duty.Max)
-	// Output: period 30.88 ms to 38.51 ms, duty 0.5984 to 0.6016
+	// Output: period 30.88 ms to 38.50 ms, duty 0.5984 to 0.6016
 }
