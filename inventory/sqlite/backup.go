@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"io/fs"
 	"os"
+	"path/filepath"
 
 	sqlite3 "github.com/mattn/go-sqlite3"
 
@@ -14,61 +15,102 @@ import (
 )
 
 // Backup copies the drawer into a new file through SQLite's online backup, while
-// others may read and book, and checks the copy before it says so. Errors:
-// Conflict where the file exists; on any error no file is left.
-func (d *Drawer) Backup(ctx context.Context, path string) (err error) {
-	// The name is taken before anything is written, so that no file is replaced.
-	file, err := os.OpenFile(path, os.O_CREATE|os.O_EXCL, 0o644)
-	switch {
-	case errors.Is(err, fs.ErrExist):
-		return inventory.Errorf(inventory.Conflict, "%s exists already: a backup never replaces a file; name a new one", path)
-	case err != nil:
+// others may read and book, and checks the copy before it has its name. Errors:
+// Conflict where the file exists; Invalid where it cannot be written or the copy
+// does not check out. On any error no file is left.
+func (d *Drawer) Backup(ctx context.Context, path string) error {
+	drawer, err := os.Stat(d.path)
+	if err != nil {
+		return inventory.Errorf(inventory.Invalid, "the drawer %s cannot be reached: %v", d.path, reason(err))
+	}
+	if _, err := os.Lstat(path); err == nil {
+		return taken(path)
+	} else if !errors.Is(err, fs.ErrNotExist) {
 		return inventory.Errorf(inventory.Invalid, "the backup %s cannot be made: %v", path, reason(err))
 	}
-	file.Close()
+	// Under another name until it is whole, so that a crash leaves nothing that
+	// could be taken for a backup.
+	partial, err := os.CreateTemp(filepath.Dir(path), filepath.Base(path)+".*.partial")
+	if err != nil {
+		return inventory.Errorf(inventory.Invalid, "the backup %s cannot be made: %v", path, reason(err))
+	}
+	err = errors.Join(partial.Chmod(drawer.Mode().Perm()), partial.Close())
 	defer func() {
-		if err != nil {
-			for _, suffix := range []string{"", "-wal", "-shm", "-journal"} {
-				os.Remove(path + suffix)
-			}
+		for _, suffix := range []string{"", "-journal", "-wal", "-shm"} {
+			os.Remove(partial.Name() + suffix)
 		}
 	}()
-	copied, err := sql.Open("sqlite3", dataSource(path, true))
 	if err != nil {
+		return inventory.Errorf(inventory.Invalid, "the backup %s cannot be made: %v", path, reason(err))
+	}
+	copied := &Drawer{path: path}
+	if copied.db, err = sql.Open("sqlite3", dataSource(partial.Name(), false)); err != nil {
 		return d.explain("back up", err)
 	}
-	defer copied.Close()
-	copied.SetMaxOpenConns(1)
-	if err := copyDatabase(ctx, copied, d.db); err != nil {
-		return d.explain("back up", err)
+	copied.db.SetMaxOpenConns(1)
+	err = copyDatabase(ctx, copied.db, d.db)
+	var findings []string
+	if err == nil {
+		findings, err = copied.Verify(ctx)
 	}
-	check := Drawer{db: copied, path: path}
-	findings, err := check.Verify(ctx)
+	if closing := copied.db.Close(); err == nil {
+		err = closing
+	}
 	if err != nil {
-		return err
+		return copied.explain("write the backup", err)
 	}
 	if len(findings) > 0 {
-		return inventory.Errorf(inventory.Invalid, "the backup %s does not check out and was removed: %s", path, findings[0])
+		return inventory.Errorf(inventory.Invalid, "the drawer %s cannot be backed up, for the copy is not sound: %s; \"tickdrawer verify\" lists all that is wrong", d.path, findings[0])
+	}
+	return nameNew(partial.Name(), path)
+}
+
+func taken(path string) error {
+	return inventory.Errorf(inventory.Conflict, "%s exists already: a backup never replaces a file; name a new one", path)
+}
+
+// nameNew gives the file its name where nothing has it yet.
+func nameNew(partial, path string) error {
+	err := os.Link(partial, path)
+	if errors.Is(err, fs.ErrExist) {
+		return taken(path)
+	}
+	if err == nil {
+		return nil // the caller removes the other name
+	}
+	// A file system without hard links: the name was free a moment ago.
+	if err := os.Rename(partial, path); err != nil {
+		return inventory.Errorf(inventory.Invalid, "the backup %s cannot be named: %v", path, reason(err))
 	}
 	return nil
 }
 
-// copyDatabase runs the backup from one database into another.
+// copyDatabase copies one database into another, as it is at the first step.
 func copyDatabase(ctx context.Context, to, from *sql.DB) error {
 	return withConnection(ctx, to, func(target *sqlite3.SQLiteConn) error {
-		return withConnection(ctx, from, func(source *sqlite3.SQLiteConn) error {
+		return withConnection(ctx, from, func(source *sqlite3.SQLiteConn) (err error) {
+			// A reader's snapshot: without it a booking of another program would
+			// make the backup start again, and again.
+			if _, err := source.Exec("BEGIN DEFERRED; SELECT COUNT(*) FROM sqlite_schema", nil); err != nil {
+				return err
+			}
+			defer func() {
+				if _, ending := source.Exec("ROLLBACK", nil); err == nil {
+					err = ending
+				}
+			}()
 			backup, err := target.Backup("main", source, "main")
 			if err != nil {
 				return err
 			}
-			done := false
-			for !done && err == nil {
+			const pages = 1000 // a step; between steps the copying can be called off
+			for done := false; !done && err == nil; {
 				if err = ctx.Err(); err == nil {
-					done, err = backup.Step(1000)
+					done, err = backup.Step(pages)
 				}
 			}
-			if closing := backup.Finish(); err == nil {
-				err = closing
+			if ending := backup.Finish(); err == nil {
+				err = ending
 			}
 			return err
 		})

@@ -5,16 +5,20 @@ import (
 	"database/sql"
 	"errors"
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 
 	"tickdrawer/inventory"
 )
 
+// MostPieces is the most that a lot holds, so that no sum of pieces overflows.
+const MostPieces = 1_000_000_000_000
+
 // IntakeFile is one file's content as receipts.
 type IntakeFile struct {
 	Name     string
-	SHA256   string // of the file's bytes: the same content is not booked twice
+	SHA256   string // of the file's bytes, hexadecimal: the same content is not booked twice
 	Receipts []inventory.Receipt
 }
 
@@ -40,8 +44,9 @@ type Booking struct {
 // stocktake the rows of one lot add up and the lots that no row names stay as
 // they are.
 //
-// Errors: Conflict where the same content was booked before; Shortage where a
-// stocktake finds fewer pieces than are reserved.
+// Errors: Invalid where a receipt makes no sense; Conflict where the same content
+// was booked before; Shortage where a stocktake finds fewer pieces than are
+// reserved.
 func (d *Drawer) Book(ctx context.Context, intake Intake) (Booking, error) {
 	var b Booking
 	dry := errors.New("dry run")
@@ -50,13 +55,7 @@ func (d *Drawer) Book(ctx context.Context, intake Intake) (Booking, error) {
 		if err != nil {
 			return err
 		}
-		defer w.close()
-		for _, file := range intake.Files {
-			if err := w.file(file, intake); err != nil {
-				return err
-			}
-		}
-		if err := w.counts(); err != nil {
+		if err := w.intake(intake); err != nil {
 			return err
 		}
 		b = w.booking
@@ -65,153 +64,261 @@ func (d *Drawer) Book(ctx context.Context, intake Intake) (Booking, error) {
 		}
 		return nil
 	})
-	if errors.Is(err, dry) {
-		err = nil
-	}
-	if err != nil {
+	if err != nil && !errors.Is(err, dry) {
 		return Booking{}, err
 	}
 	return b, nil
 }
 
-// intakeWriter books receipts with prepared statements.
+// intakeWriter books receipts with prepared statements, which close with their
+// transaction.
 type intakeWriter struct {
-	ctx                        context.Context
-	tx                         *sql.Tx
-	d                          *Drawer
-	stamp                      string
-	booking                    Booking
-	parts                      map[string]int64 // by key
-	find, create, revise, move *sql.Stmt
-	counted                    map[inventory.LotID]count // by lot, of a stocktake
-	order                      []inventory.LotID         // in which the lots were counted
+	ctx     context.Context
+	tx      *sql.Tx
+	ledger  *ledger
+	booking Booking
+
+	parts                                     map[string]int64 // by key
+	findPart, addPart, find, create, describe *sql.Stmt
+
+	counted map[inventory.LotID]*count // of a stocktake
+	order   []*count                   // as they were first counted
+}
+
+// source is the file that is being booked.
+type source struct {
+	id   int64
+	name string
+}
+
+// stored is a lot as it is found in the drawer.
+type stored struct {
+	id               inventory.LotID
+	part             string // key
+	onHand, reserved int64
+	cost             sql.NullInt64
+	note             string
 }
 
 // count is what a stocktake found in a lot.
-type count struct{ pieces, intake int64 }
+type count struct {
+	lot    stored
+	name   string // of the part
+	pieces int64
+	source source
+}
 
 func newIntakeWriter(ctx context.Context, tx *sql.Tx, d *Drawer) (*intakeWriter, error) {
-	w := &intakeWriter{ctx: ctx, tx: tx, d: d, stamp: d.stamp(), parts: map[string]int64{}, counted: map[inventory.LotID]count{}}
+	w := &intakeWriter{ctx: ctx, tx: tx, parts: map[string]int64{}, counted: map[inventory.LotID]*count{}}
 	for _, statement := range []struct {
 		into **sql.Stmt
 		text string
 	}{
-		{&w.find, "SELECT id, on_hand, note FROM lot WHERE part_id = ? AND bin = ? AND measured = ?"},
+		{&w.findPart, selectPart},
+		{&w.addPart, insertPart},
+		{&w.find, "SELECT id, on_hand, reserved, unit_cost_micros, note FROM lot WHERE part_id = ? AND bin = ? AND measured = ?"},
 		{&w.create, "INSERT INTO lot (part_id, bin, measured, unit_cost_micros, note) VALUES (?, ?, ?, ?, ?)"},
-		{&w.revise, "UPDATE lot SET unit_cost_micros = COALESCE(?, unit_cost_micros), note = ? WHERE id = ?"},
-		{&w.move, insertMovement},
+		{&w.describe, "UPDATE lot SET unit_cost_micros = ?, note = ? WHERE id = ?"},
 	} {
 		prepared, err := tx.PrepareContext(ctx, statement.text)
 		if err != nil {
-			w.close()
 			return nil, err
 		}
 		*statement.into = prepared
 	}
-	return w, nil
+	var err error
+	w.ledger, err = openLedger(ctx, tx, d)
+	return w, err
 }
 
-const insertMovement = "INSERT INTO movement (at, who, kind, lot_id, delta, balance, kit_id, intake_id) VALUES (?, ?, ?, ?, ?, ?, ?, ?)"
-
-func (w *intakeWriter) close() {
-	for _, statement := range []*sql.Stmt{w.find, w.create, w.revise, w.move} {
-		if statement != nil {
-			statement.Close()
+func (w *intakeWriter) intake(intake Intake) error {
+	names := map[string]string{} // by content
+	for _, file := range intake.Files {
+		if other, twice := names[file.SHA256]; twice && !intake.Again {
+			return inventory.Errorf(inventory.Conflict, "%s and %s hold the same content: nothing was booked; name one of them, or use --again to book it twice", other, file.Name)
+		}
+		names[file.SHA256] = file.Name
+	}
+	for _, file := range intake.Files {
+		from, err := w.source(file, intake.Again)
+		if err != nil {
+			return err
+		}
+		for _, receipt := range file.Receipts {
+			if err := w.receipt(receipt, from, intake.Stocktake); err != nil {
+				if inventory.ReasonOf(err) != 0 {
+					return err
+				}
+				return fmt.Errorf("%s: %w", receipt.Part.Name(), err)
+			}
 		}
 	}
+	return w.counts()
 }
 
-func (w *intakeWriter) file(file IntakeFile, intake Intake) error {
-	if !intake.Again {
+// source keeps that the file is booked.
+func (w *intakeWriter) source(file IntakeFile, again bool) (source, error) {
+	if !again {
 		var name, at string
 		err := w.tx.QueryRowContext(w.ctx, "SELECT name, booked_at FROM intake WHERE sha256 = ? ORDER BY id LIMIT 1", file.SHA256).Scan(&name, &at)
 		if err == nil {
-			return inventory.Errorf(inventory.Conflict, "%s was booked already (as %s, %s): nothing was booked; to book the same content once more use --again", file.Name, name, at)
+			booked, err := parseStamp(at)
+			if err != nil {
+				return source{}, err
+			}
+			return source{}, inventory.Errorf(inventory.Conflict, "%s was booked already (as %s, on %s UTC): nothing was booked; to book the same content once more use --again", file.Name, name, booked.Format("2006-01-02 at 15:04"))
 		}
 		if !errors.Is(err, sql.ErrNoRows) {
-			return err
+			return source{}, err
 		}
 	}
-	result, err := w.tx.ExecContext(w.ctx, "INSERT INTO intake (name, sha256, booked_at, who) VALUES (?, ?, ?, ?)", file.Name, file.SHA256, w.stamp, w.d.who)
+	result, err := w.tx.ExecContext(w.ctx, "INSERT INTO intake (name, sha256, booked_at, who) VALUES (?, ?, ?, ?)", file.Name, file.SHA256, w.ledger.at, w.ledger.who)
+	if err != nil {
+		return source{}, err
+	}
+	id, err := result.LastInsertId()
+	return source{id, file.Name}, err
+}
+
+// receipt books the receipt, or keeps what it counted.
+func (w *intakeWriter) receipt(receipt inventory.Receipt, from source, stocktake bool) error {
+	if err := checkReceipt(receipt, stocktake); err != nil {
+		return err
+	}
+	lot, found, err := w.lot(receipt)
 	if err != nil {
 		return err
 	}
-	intakeID, err := result.LastInsertId()
-	if err != nil {
-		return err
-	}
-	for _, receipt := range file.Receipts {
-		lot, onHand, err := w.lot(receipt, intake.Stocktake && receipt.Quantity == 0)
-		if err != nil {
-			return fmt.Errorf("book %s: %w", receipt.Part.Name(), err)
+	if !found {
+		if receipt.Quantity == 0 {
+			return nil // none is there, and none was thought to be
 		}
-		if intake.Stocktake {
-			if _, counted := w.counted[lot]; !counted && lot != 0 {
-				w.order = append(w.order, lot)
-			}
-			w.counted[lot] = count{w.counted[lot].pieces + receipt.Quantity, intakeID}
-			continue
-		}
-		if err := w.book(inventory.MoveReceipt, lot, receipt.Quantity, onHand, intakeID); err != nil {
+		if lot, err = w.begin(receipt); err != nil {
 			return err
 		}
+	}
+	if !stocktake {
+		if receipt.Quantity > MostPieces-lot.onHand {
+			return tooMany(receipt.Part.Name())
+		}
+		return w.move(inventory.MoveReceipt, lot, receipt.Quantity, from)
+	}
+	c, counted := w.counted[lot.id]
+	if !counted {
+		c = &count{lot: lot, name: receipt.Part.Name()}
+		w.counted[lot.id] = c
+		w.order = append(w.order, c)
+	}
+	if receipt.Quantity > MostPieces-c.pieces {
+		return tooMany(c.name)
+	}
+	c.pieces += receipt.Quantity
+	c.source = from
+	return nil
+}
+
+func tooMany(part string) error {
+	return inventory.Errorf(inventory.Invalid, "%s: more than %d pieces in one lot is out of reason: check the quantity", part, int64(MostPieces))
+}
+
+func checkReceipt(r inventory.Receipt, stocktake bool) error {
+	name := r.Part.Name()
+	switch {
+	case stocktake && r.Quantity < 0:
+		return inventory.Errorf(inventory.Invalid, "%s: a count is 0 or more, not %d", name, r.Quantity)
+	case !stocktake && r.Quantity < 1:
+		return inventory.Errorf(inventory.Invalid, "%s: a receipt is at least one piece, not %d", name, r.Quantity)
+	case !(r.Measured >= 0) || math.IsInf(r.Measured, 0):
+		return inventory.Errorf(inventory.Invalid, "%s: a measured value is a number above 0", name)
+	case r.Measured > 0 && r.Part.Kind.Unit() == "":
+		return inventory.Errorf(inventory.Invalid, "%s: a part of kind %s has no value to measure", name, r.Part.Kind)
+	case r.UnitCost != nil && *r.UnitCost < 0:
+		return inventory.Errorf(inventory.Invalid, "%s: a unit cost is never below 0", name)
 	}
 	return nil
 }
 
-// lot returns the receipt's lot and what is in it, and begins it where it is
-// new, unless none of it is there.
-func (w *intakeWriter) lot(receipt inventory.Receipt, none bool) (id inventory.LotID, onHand int64, err error) {
-	key := receipt.Part.Key()
-	part, known := w.parts[key]
+// lot returns the receipt's lot where it is in the drawer, with its cost and note
+// brought up to date.
+func (w *intakeWriter) lot(receipt inventory.Receipt) (stored, bool, error) {
+	lot := stored{part: receipt.Part.Key()}
+	part, known := w.parts[lot.part]
 	if !known {
-		if part, err = partID(w.ctx, w.tx, receipt.Part); err != nil {
-			return 0, 0, err
+		err := w.findPart.QueryRowContext(w.ctx, lot.part).Scan(&part)
+		if errors.Is(err, sql.ErrNoRows) {
+			return lot, false, nil
 		}
-		w.parts[key] = part
+		if err != nil {
+			return lot, false, err
+		}
+		w.parts[lot.part] = part
 	}
-	var cost any
+	err := w.find.QueryRowContext(w.ctx, part, receipt.Bin, receipt.Measured).Scan(&lot.id, &lot.onHand, &lot.reserved, &lot.cost, &lot.note)
+	if errors.Is(err, sql.ErrNoRows) {
+		return lot, false, nil
+	}
+	if err != nil {
+		return lot, false, err
+	}
+	cost, note := lot.cost, withNote(lot.note, receipt.Note)
 	if receipt.UnitCost != nil {
-		cost = int64(*receipt.UnitCost)
+		cost = sql.NullInt64{Int64: int64(*receipt.UnitCost), Valid: true}
 	}
-	var note string
-	err = w.find.QueryRowContext(w.ctx, part, receipt.Bin, receipt.Measured).Scan(&id, &onHand, &note)
-	if err == nil {
-		if receipt.Note != "" && !strings.Contains(note, receipt.Note) {
-			note = strings.TrimPrefix(note+"; "+receipt.Note, "; ")
-		}
-		_, err = w.revise.ExecContext(w.ctx, cost, note, id)
-		return id, onHand, err
+	if cost != lot.cost || note != lot.note {
+		_, err = w.describe.ExecContext(w.ctx, cost, note, lot.id)
 	}
-	if !errors.Is(err, sql.ErrNoRows) || none {
-		if none {
-			err = nil
+	return lot, true, err
+}
+
+// withNote returns the note with what is new about the other; "; " divides.
+func withNote(note, other string) string {
+	switch {
+	case note == "":
+		return other
+	case other == "" || strings.Contains("; "+note+"; ", "; "+other+"; "):
+		return note
+	}
+	return note + "; " + other
+}
+
+// begin begins the receipt's lot, with nothing in it yet.
+func (w *intakeWriter) begin(receipt inventory.Receipt) (stored, error) {
+	lot := stored{part: receipt.Part.Key()}
+	part, known := w.parts[lot.part]
+	if !known {
+		result, err := w.addPart.ExecContext(w.ctx, partValues(receipt.Part)...)
+		if err != nil {
+			return lot, err
 		}
-		return 0, 0, err
+		if part, err = result.LastInsertId(); err != nil {
+			return lot, err
+		}
+		w.parts[lot.part] = part
+	}
+	var cost sql.NullInt64
+	if receipt.UnitCost != nil {
+		cost = sql.NullInt64{Int64: int64(*receipt.UnitCost), Valid: true}
 	}
 	result, err := w.create.ExecContext(w.ctx, part, receipt.Bin, receipt.Measured, cost, receipt.Note)
 	if err != nil {
-		return 0, 0, err
+		return lot, err
 	}
-	w.booking.LotsCreated++
 	number, err := result.LastInsertId()
-	return inventory.LotID(number), 0, err
+	lot.id = inventory.LotID(number)
+	w.booking.LotsCreated++
+	return lot, err
 }
 
-// book adds a movement.
-func (w *intakeWriter) book(kind inventory.MovementKind, lot inventory.LotID, delta, onHand, intakeID int64) error {
-	result, err := w.move.ExecContext(w.ctx, w.stamp, w.d.who, string(kind), lot, delta, onHand+delta, nil, intakeID)
-	if err != nil {
-		return err
-	}
-	number, err := result.LastInsertId()
+// move adds a movement.
+func (w *intakeWriter) move(kind inventory.MovementKind, lot stored, delta int64, from source) error {
+	number, err := w.ledger.add(entry{kind: kind, lot: lot.id, part: lot.part, delta: delta, onHand: lot.onHand, intake: from.id, source: from.name})
 	if err != nil {
 		return err
 	}
 	if w.booking.First == 0 {
-		w.booking.First = inventory.MovementID(number)
+		w.booking.First = number
 	}
-	w.booking.Last = inventory.MovementID(number)
+	w.booking.Last = number
 	w.booking.Movements++
 	w.booking.QuantityBooked += delta
 	return nil
@@ -220,47 +327,42 @@ func (w *intakeWriter) book(kind inventory.MovementKind, lot inventory.LotID, de
 // counts books what a stocktake found beside what the drawer says.
 func (w *intakeWriter) counts() error {
 	var held []string
-	for _, lot := range w.order {
-		var onHand, reserved int64
-		if err := w.tx.QueryRowContext(w.ctx, "SELECT on_hand, reserved FROM lot WHERE id = ?", lot).Scan(&onHand, &reserved); err != nil {
-			return err
-		}
-		found := w.counted[lot]
-		if found.pieces < reserved {
-			kits, err := holders(w.ctx, w.tx, lot)
+	for _, c := range w.order {
+		if c.pieces < c.lot.reserved {
+			kits, err := holders(w.ctx, w.tx, c.lot.id)
 			if err != nil {
 				return err
 			}
-			held = append(held, fmt.Sprintf("lot %d: %d counted, %d reserved by kit %s", lot, found.pieces, reserved, list(kits)))
+			held = append(held, fmt.Sprintf("lot %d (%s): %d counted, %d reserved by %s", c.lot.id, c.name, c.pieces, c.lot.reserved, kits))
 			continue
 		}
-		if found.pieces != onHand {
-			if err := w.book(inventory.MoveCount, lot, found.pieces-onHand, onHand, found.intake); err != nil {
+		if c.pieces != c.lot.onHand {
+			if err := w.move(inventory.MoveCount, c.lot, c.pieces-c.lot.onHand, c.source); err != nil {
 				return err
 			}
 		}
 	}
 	if held != nil {
-		slices.Sort(held)
-		return inventory.Errorf(inventory.Shortage, "fewer pieces were counted than are promised; nothing was booked; release the kit first:\n  %s", strings.Join(held, "\n  "))
+		slices.SortFunc(held, inventory.NaturalCompare)
+		return inventory.Errorf(inventory.Shortage, "fewer pieces were counted than are promised; nothing was booked; release the kit first (\"tickdrawer release KIT\"):\n  %s", strings.Join(held, "\n  "))
 	}
 	return nil
 }
 
-// holders returns the kits that hold pieces of the lot.
-func holders(ctx context.Context, tx *sql.Tx, lot inventory.LotID) ([]inventory.KitID, error) {
-	rows, err := tx.QueryContext(ctx, "SELECT kit_id FROM reservation WHERE lot_id = ? ORDER BY kit_id", lot)
+// holders returns the kits that hold pieces of the lot, for a sentence.
+func holders(ctx context.Context, q querier, lot inventory.LotID) (string, error) {
+	rows, err := q.QueryContext(ctx, "SELECT kit_id FROM reservation WHERE lot_id = ? ORDER BY kit_id", lot)
 	if err != nil {
-		return nil, err
+		return "", err
 	}
 	defer rows.Close()
-	var kits []inventory.KitID
+	var kits []string
 	for rows.Next() {
 		var kit inventory.KitID
 		if err := rows.Scan(&kit); err != nil {
-			return nil, err
+			return "", err
 		}
-		kits = append(kits, kit)
+		kits = append(kits, fmt.Sprintf("kit %d", kit))
 	}
-	return kits, rows.Err()
+	return strings.Join(kits, " and "), rows.Err()
 }
