@@ -47,6 +47,10 @@ type Drawer struct {
 // a write-ahead log could be reset while another connection reads it.
 const leastLibrary = 3_051_003
 
+// leastSize is the least page of an SQLite file, in bytes; SQLite takes some
+// shorter files for empty ones.
+const leastSize = 512
+
 // applicationID stands in the header of every drawer: "tdrs".
 const applicationID = 0x74647273
 
@@ -57,6 +61,7 @@ var pragmas = []struct{ name, parameter, set, want, why string }{
 	{"recursive_triggers", "_recursive_triggers", "on", "1", "INSERT OR REPLACE cannot slip past the triggers that protect movements"},
 	{"synchronous", "_synchronous", "FULL", "2", "what was acknowledged survives a power cut"},
 	{"busy_timeout", "_busy_timeout", "10000", "10000", "two programs take turns instead of failing"},
+	{"cache_size", "_cache_size", "-65536", "-65536", "a large booking stays in memory (64 MiB) until it is whole"},
 	// The file itself remembers it, and another program's file must not be
 	// changed before it is known to be a drawer.
 	{"journal_mode", "", "WAL", "wal", "a reader never stops a booking, and a crash leaves the last booking whole"},
@@ -115,8 +120,10 @@ func checkFile(path string, create bool) error {
 		return inventory.Errorf(inventory.Invalid, "%s is a folder: name a file", path)
 	case err == nil && !info.Mode().IsRegular():
 		return inventory.Errorf(inventory.Invalid, "%s is no ordinary file: name another", path)
+	case err == nil && 0 < info.Size() && info.Size() < leastSize:
+		return inventory.Errorf(inventory.Invalid, "%s is not a drawer: name another file", path)
 	case err == nil:
-		return nil
+		return nil // SQLite looks into it: to open and close it here would drop the locks of this program's other handles
 	case !errors.Is(err, fs.ErrNotExist):
 		return inventory.Errorf(inventory.Invalid, "the drawer %s cannot be reached: %v", path, reason(err))
 	case !create:

@@ -1,0 +1,48 @@
+package sqlite
+
+import (
+	"fmt"
+	"path/filepath"
+	"strings"
+	"testing"
+
+	"tickdrawer/inventory"
+)
+
+// BenchmarkBook books 100,000 rows in one transaction: into new lots, and into
+// lots that are there.
+func BenchmarkBook(b *testing.B) {
+	const rows = 100_000
+	for _, bench := range []struct {
+		name string
+		lots int
+	}{{"a lot each", rows}, {"1000 lots", 1000}} {
+		b.Run(bench.name, func(b *testing.B) {
+			receipts := make([]inventory.Receipt, rows)
+			for i := range receipts {
+				receipts[i] = inventory.Receipt{Part: ohms(b, float64(1+i%bench.lots)), Bin: fmt.Sprint(i % 50), Quantity: 10}
+			}
+			for b.Loop() {
+				d := open(b, filepath.Join(b.TempDir(), "stock.drawer"))
+				if _, err := d.Book(b.Context(), Intake{Files: []IntakeFile{{Name: "rows.csv", SHA256: strings.Repeat("0", 64), Receipts: receipts}}}); err != nil {
+					b.Fatal(err)
+				}
+			}
+			b.ReportMetric(rows*float64(b.N)/b.Elapsed().Seconds(), "rows/s")
+		})
+	}
+}
+
+// BenchmarkVerify checks a ledger of 100,000 movements.
+func BenchmarkVerify(b *testing.B) {
+	const rows = 100_000
+	d := fresh(b)
+	receipts := make([]inventory.Receipt, rows)
+	for i := range receipts {
+		receipts[i] = inventory.Receipt{Part: ohms(b, float64(1+i%1000)), Quantity: 10}
+	}
+	book(b, d, Intake{Files: []IntakeFile{file("rows.csv", receipts...)}})
+	for b.Loop() {
+		wantSound(b, d)
+	}
+}

@@ -1,0 +1,185 @@
+package sqlite
+
+import (
+	"context"
+	"fmt"
+	"strings"
+	"testing"
+
+	"tickdrawer/inventory"
+)
+
+// busyDrawer returns a drawer of two lots with 10 and 5 pieces. Kit 1 holds 4 of
+// lot 1; kit 2 took 3 of lot 2 and brought 1 back; kit 3 is planned.
+func busyDrawer(t *testing.T) *Drawer {
+	t.Helper()
+	ctx := context.Background()
+	d := stocked(t, 10, 5)
+	held := planned(t, d, inventory.Pick{Lot: 1, Quantity: 4})
+	out := planned(t, d, inventory.Pick{Lot: 2, Quantity: 3})
+	planned(t, d, inventory.Pick{Lot: 1, Quantity: 2})
+	if err := d.Reserve(ctx, held); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := d.Pull(ctx, out); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := d.PutBack(ctx, out, 2, 1); err != nil {
+		t.Fatal(err)
+	}
+	return d
+}
+
+// movement returns the SQL that adds a movement.
+func movement(verb, id, kind string, lot, delta, balance int, kit string) string {
+	return fmt.Sprintf(`%s INTO movement (id, at, who, kind, lot_id, delta, balance, kit_id, link)
+		VALUES (%s, '2026-03-14T12:00:00.000000Z', 'x', '%s', %d, %d, %d, %s, zeroblob(32))`, verb, id, kind, lot, delta, balance, kit)
+}
+
+// Each statement goes round the program: the database alone must refuse it, and
+// nothing may have changed.
+func TestDatabaseRefusesByItself(t *testing.T) {
+	for _, c := range []struct{ name, sql, says string }{
+		{"a movement changed", "UPDATE movement SET delta = 11 WHERE id = 1", "never changed"},
+		{"a movement deleted", "DELETE FROM movement WHERE id = 1", "never deleted"},
+		{"every movement deleted", "DELETE FROM movement", "never deleted"},
+		{"a movement replaced", movement("INSERT OR REPLACE", "1", "receipt", 1, 5, 15, "NULL"), "never replaced"},
+		{"a movement replaced by the other word", movement("REPLACE", "2", "receipt", 1, 5, 15, "NULL"), "never replaced"},
+		{"a movement upserted", movement("INSERT", "1", "receipt", 1, 5, 15, "NULL") + " ON CONFLICT (id) DO UPDATE SET delta = 5", "never replaced"},
+		{"a movement before the first", movement("INSERT", "-1", "receipt", 1, 5, 15, "NULL"), "CHECK"},
+		{"a movement before another", movement("INSERT", "50", "count", 1, 5, 15, "NULL") + ";" + movement("INSERT", "40", "count", 1, 5, 20, "NULL"), "comes last"},
+		{"a movement of nothing", movement("INSERT", "NULL", "count", 1, 0, 10, "NULL"), "CHECK"},
+		{"a movement that leaves another balance", movement("INSERT", "NULL", "count", 1, 1, 12, "NULL"), "continues"},
+		{"a movement of no lot", movement("INSERT", "NULL", "count", 99, 1, 1, "NULL"), "continues"},
+		{"a movement of no kind", movement("INSERT", "NULL", "gift", 1, 1, 11, "NULL"), "FOREIGN KEY"},
+		{"a receipt of less than nothing", movement("INSERT", "NULL", "receipt", 1, -1, 9, "NULL"), "CHECK"},
+		{"on hand below zero", movement("INSERT", "NULL", "count", 2, -4, -1, "NULL"), "CHECK"},
+		{"on hand below reserved", movement("INSERT", "NULL", "count", 1, -7, 3, "NULL"), "CHECK"},
+		{"on hand below reserved, passed over", movement("INSERT OR IGNORE", "NULL", "count", 1, -7, 3, "NULL"), "leaves what is reserved"},
+		{"more than a lot may hold", movement("INSERT", "NULL", "count", 1, 1_000_000_000_000, 1_000_000_000_010, "NULL"), "CHECK"},
+		{"a pull for no kit", movement("INSERT", "NULL", "pull", 1, -1, 9, "NULL"), "CHECK"},
+		{"a pull from a lot that the kit does not pick", movement("INSERT", "NULL", "pull", 1, -1, 9, "2"), "no more than its picks"},
+		{"a kit pulled twice", movement("INSERT", "NULL", "pull", 2, -3, 0, "2"), "CHECK"},
+		{"a kit pulled twice, passed over", movement("INSERT OR IGNORE", "NULL", "pull", 2, -3, 0, "2"), "no more than its picks"},
+		{"more brought back than is out", movement("INSERT", "NULL", "putback", 2, 3, 6, "2"), "CHECK"},
+		{"more brought back than is out, passed over", movement("INSERT OR IGNORE", "NULL", "putback", 2, 3, 6, "2"), "no more than it took"},
+		{"a movement without a link", "INSERT INTO movement (at, who, kind, lot_id, delta, balance, link) VALUES ('2026-03-14T12:00:00.000000Z', 'x', 'count', 1, 1, 11, x'00')", "CHECK"},
+		{"a time of another form", "INSERT INTO movement (at, who, kind, lot_id, delta, balance, link) VALUES ('yesterday', 'x', 'count', 1, 1, 11, zeroblob(32))", "CHECK"},
+
+		{"pieces put into a lot", "UPDATE lot SET on_hand = 100 WHERE id = 1", "movements alone"},
+		{"pieces taken from a lot, passed over", "UPDATE OR IGNORE lot SET on_hand = 4 WHERE id = 1", "movements alone"},
+		{"pieces held without a kit", "UPDATE lot SET reserved = 9 WHERE id = 1", "reservations alone"},
+		{"pieces freed without their kit", "UPDATE lot SET reserved = 0 WHERE id = 1", "reservations alone"},
+		{"a lot that begins with pieces", "INSERT INTO lot (part_id, bin, measured, note, on_hand) VALUES (1, 'Z', 0, '', 5)", "begins empty"},
+		{"a lot that begins reserved", "INSERT INTO lot (part_id, bin, measured, note, reserved) VALUES (1, 'Z', 0, '', 5)", "begins empty"},
+		{"a lot of the same part in the same bin", "INSERT INTO lot (part_id, bin, measured, note) SELECT part_id, bin, measured, '' FROM lot", "UNIQUE"},
+		{"a lot replaced", "INSERT OR REPLACE INTO lot (id, part_id, bin, measured, note) VALUES (1, 1, 'Z', 0, '')", "never deleted"},
+		{"a lot deleted", "DELETE FROM lot WHERE id = 1", "never deleted"},
+		{"a lot given another part", "UPDATE lot SET part_id = 2 WHERE id = 1", "keeps its number and part"},
+		{"a lot given another number", "UPDATE lot SET id = 9 WHERE id = 1", "keeps its number and part"},
+		{"a lot of no part", "INSERT INTO lot (part_id, bin, measured, note) VALUES (99, 'Z', 0, '')", "FOREIGN KEY"},
+		{"a measured value below zero", "UPDATE lot SET measured = -1 WHERE id = 1", "CHECK"},
+		{"a measured value that is text", "UPDATE lot SET measured = 'much' WHERE id = 1", "cannot store TEXT"},
+		{"an endless measured value", "UPDATE lot SET measured = 9e999 WHERE id = 1", "CHECK"},
+		{"a cost below zero", "UPDATE lot SET unit_cost_micros = -1 WHERE id = 1", "CHECK"},
+
+		{"a part changed", "UPDATE part SET value = 4700 WHERE id = 1", "never changed"},
+		{"a part deleted", "DELETE FROM part WHERE id = 1", "FOREIGN KEY"},
+		{"a part of no kind", "INSERT INTO part SELECT 9, 'k', 'coil', value, tolerance_minus, tolerance_plus, part_number, rating_v, rating_w, dielectric, tempco_ppm, package, forward_v, saturation_a, ideality, series_ohm FROM part WHERE id = 1", "CHECK"},
+		{"a booked file changed", "UPDATE intake SET sha256 = 'x' WHERE id = 1", "never changed"},
+		{"a booked file deleted", "DELETE FROM intake WHERE id = 1", "FOREIGN KEY"},
+
+		{"a kit that begins pulled", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 1, 1, 'pulled', '2026-03-14T12:00:00.000000Z', x'')", "begins planned"},
+		{"more boards than are wanted", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 2, 1, 'planned', '2026-03-14T12:00:00.000000Z', x'')", "CHECK"},
+		{"a kit in no state", "UPDATE kit SET state = 'lost' WHERE id = 3", "from this state to that"},
+		{"a pulled kit planned again", "UPDATE kit SET state = 'planned' WHERE id = 2", "from this state to that"},
+		{"a kit released while it holds pieces", "UPDATE kit SET state = 'released' WHERE id = 1", "holds nothing"},
+		{"a kit called pulled", "UPDATE kit SET state = 'pulled' WHERE id = 3", "took all its picks"},
+		{"a pick called pulled", "UPDATE pick SET pulled = 2 WHERE kit_id = 3", "by movements"},
+		{"a pick called put back", "UPDATE pick SET returned = 3 WHERE kit_id = 2", "by movements"},
+		{"a pick made smaller", "UPDATE pick SET quantity = 1 WHERE kit_id = 3", "by movements"},
+		{"a pick that begins pulled", "INSERT INTO pick (kit_id, lot_id, quantity, pulled, designators) VALUES (3, 2, 1, 1, '[]')", "nothing pulled"},
+		{"a pick added to a pulled kit", "INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (2, 1, 1, '[]')", "nothing pulled"},
+		{"a pick of nothing", "INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 2, 0, '[]')", "CHECK"},
+		{"a reserved pick deleted", "DELETE FROM pick WHERE kit_id = 1", "FOREIGN KEY"},
+		{"a pulled pick deleted", "DELETE FROM pick WHERE kit_id = 2", "FOREIGN KEY"},
+
+		{"pieces held for a planned kit", "INSERT INTO reservation VALUES (3, 1, 2)", "reserved kit"},
+		{"pieces held twice for a kit", "INSERT INTO reservation VALUES (1, 1, 4)", "never replaced"},
+		{"a reservation replaced", "INSERT OR REPLACE INTO reservation VALUES (1, 1, 1)", "never replaced"},
+		{"a reservation changed", "UPDATE reservation SET quantity = 1", "never changed"},
+		{"more held than is on hand", "UPDATE kit SET state = 'reserved' WHERE id = 3; INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 2, 4, '[]'); INSERT INTO reservation VALUES (3, 2, 4)", "CHECK"},
+		{"more held than is on hand, passed over", "UPDATE kit SET state = 'reserved' WHERE id = 3; INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 2, 4, '[]'); INSERT OR IGNORE INTO reservation VALUES (3, 2, 4)", "no more is reserved"},
+		{"more held than the kit has still to take", "UPDATE kit SET state = 'reserved' WHERE id = 3; INSERT INTO reservation VALUES (3, 1, 3)", "no more than it has still to take"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			d := busyDrawer(t)
+			before := contents(t, d)
+			tx, err := d.db.Begin()
+			if err != nil {
+				t.Fatal(err)
+			}
+			if _, err := tx.Exec(c.sql); err == nil {
+				t.Error("it was allowed")
+			} else if !strings.Contains(err.Error(), c.says) {
+				t.Errorf("refused with %q, want it to say %q", err, c.says)
+			}
+			if err := tx.Rollback(); err != nil {
+				t.Fatal(err)
+			}
+			if after := contents(t, d); after != before {
+				t.Errorf("the drawer has changed:\n%s\nwas:\n%s", after, before)
+			}
+			wantSound(t, d)
+		})
+	}
+}
+
+// Another program may not set the pragmas that this one does.
+func TestMovementsAreNotReplacedWithoutRecursiveTriggers(t *testing.T) {
+	d := busyDrawer(t)
+	if _, err := d.db.Exec("PRAGMA recursive_triggers = off; PRAGMA foreign_keys = off"); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := d.db.Exec(movement("INSERT OR REPLACE", "1", "receipt", 1, 5, 15, "NULL")); err == nil {
+		t.Error("a movement was replaced")
+	}
+	wantSound(t, d)
+}
+
+// contents returns all that the drawer holds, for comparing.
+func contents(t testing.TB, d *Drawer) string {
+	t.Helper()
+	ctx := context.Background()
+	lots, err := d.Lots(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	movements, err := d.Movements(ctx, Filter{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	var b strings.Builder
+	for _, lot := range lots {
+		cost := "unstated"
+		if lot.UnitCost != nil {
+			cost = fmt.Sprint(*lot.UnitCost)
+		}
+		fmt.Fprintln(&b, "lot", lot.ID, lot.Part.Key(), lot.Bin, lot.Measured, cost, lot.Note, lot.OnHand, lot.Reserved)
+	}
+	for _, m := range movements {
+		fmt.Fprintln(&b, "movement", m.ID, m.At, m.Who, m.Kind, m.Lot, m.Delta, m.Balance, m.Kit, m.Source)
+	}
+	heads, err := d.Kits(ctx)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, head := range heads {
+		kit, err := d.Kit(ctx, head.ID)
+		if err != nil {
+			t.Fatal(err)
+		}
+		fmt.Fprintln(&b, "kit", kit.ID, kit.Job, kit.Boards, kit.Wanted, kit.State, kit.Picks)
+	}
+	return b.String()
+}
