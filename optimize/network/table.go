@@ -37,16 +37,53 @@ func (f *Forest) Table(parts int) *Table {
 	if parts > 2 { // two pieces have no two ways to one value
 		t.numbers = f.distinct(t.numbers)
 	}
+	t.fill()
+	return t
+}
+
+// fill reads the rows' values and costs.
+func (t *Table) fill() {
 	t.Values = make([]float64, len(t.numbers))
 	t.Costs = make([]inventory.Micros, len(t.numbers))
 	for row, number := range t.numbers {
-		t.Values[row] = f.nodes[number].value
-		t.Costs[row] = f.nodes[number].cost
+		t.Values[row] = t.forest.nodes[number].value
+		t.Costs[row] = t.forest.nodes[number].cost
 	}
 	t.cheapest = make([]inventory.Micros, spanCount(len(t.numbers)))
 	t.fillCheapest(1, 0, len(t.numbers))
-	return t
 }
+
+// ByCost returns the rows in at most so many tables of ascending cost, none of
+// them empty; rows of one cost stay together. Each is sorted by value as the
+// whole is.
+func (t *Table) ByCost(most int) []*Table {
+	ascending := slices.Clone(t.Costs)
+	slices.Sort(ascending)
+	var parts []*Table
+	for from := 0; from < len(ascending); {
+		to := len(ascending)
+		if left := most - len(parts); left > 1 {
+			to = from + max(1, (len(ascending)-from)/left)
+		}
+		for to < len(ascending) && ascending[to] == ascending[to-1] {
+			to++
+		}
+		part := &Table{Parts: t.Parts, forest: t.forest}
+		for row, number := range t.numbers {
+			if t.Costs[row] >= ascending[from] && t.Costs[row] <= ascending[to-1] {
+				part.numbers = append(part.numbers, number)
+			}
+		}
+		part.fill()
+		parts = append(parts, part)
+		from = to
+	}
+	return parts
+}
+
+// Number returns the number of the row's network in its forest: fewer parts
+// come first.
+func (t *Table) Number(row int) int32 { return t.numbers[row] }
 
 // distinct drops from the sorted numbers those whose value and usage an earlier
 // one has, keeping the lowest number of each.

@@ -18,7 +18,7 @@ type bands map[choice]optimize.Band
 func (b bands) of(tables []*network.Table, c choice, ambient optimize.Range) optimize.Band {
 	band, known := b[c]
 	if !known {
-		tree := tables[c.parts].Network(int(c.row))
+		tree := tables[c.table].Network(int(c.row))
 		band = spread.NetworkBand(&tree, ambient)
 		b[c] = band
 	}
@@ -94,10 +94,10 @@ func (s *stage) rails(c *candidate, placed []optimize.Placed) []timer.Rail {
 func (s *stage) placed(c *candidate) []optimize.Placed {
 	var placed []optimize.Placed
 	for i, position := range c.setup.circuit.Resistors {
-		tree := s.resistors[c.ohms[i].parts].Network(int(c.ohms[i].row))
+		tree := s.resistors[c.ohms[i].table].Network(int(c.ohms[i].row))
 		placed = append(placed, optimize.Placed{Position: position, Kind: inventory.Resistor, Count: 1, Network: tree})
 	}
-	tree := s.capacitors[c.farad.parts].Network(int(c.farad.row))
+	tree := s.capacitors[c.farad.table].Network(int(c.farad.row))
 	placed = append(placed, optimize.Placed{Position: "c", Kind: inventory.Capacitor, Count: 1, Network: tree})
 	if c.setup.diodes != nil {
 		placed = append(placed, optimize.Placed{

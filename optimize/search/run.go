@@ -2,6 +2,7 @@ package search
 
 import (
 	"context"
+	"math"
 	"slices"
 	"time"
 
@@ -29,9 +30,21 @@ func Run(ctx context.Context, spec optimize.Spec, lots []inventory.Lot) (optimiz
 		ctx, cancel = context.WithTimeout(ctx, spec.TimeLimit)
 		defer cancel()
 	}
-	var collected frontCollector
-	front.Search.Proven = s.run(ctx, &collected)
-	candidates := collected.front(spec.Resolution)
+	collected := newFrontCollector(spec.Resolution)
+	front.Search.Proven = s.run(ctx, collected)
+	var candidates []candidate
+	for _, cell := range collected.front() {
+		if collected.doubtful(cell) {
+			rival := rivalCollector{cell: cell, gain: collected.gain}
+			if !s.run(ctx, &rival) && !rival.found {
+				front.Search.Proven = false
+			}
+			if rival.found {
+				continue
+			}
+		}
+		candidates = append(candidates, cell.champion())
+	}
 	slices.SortFunc(candidates, func(a, b candidate) int { return compareOrder(&a, &b) })
 	for i := range candidates {
 		front.Fits = append(front.Fits, s.fit(&candidates[i]))
@@ -78,24 +91,32 @@ func prepare(spec optimize.Spec, lots []inventory.Lot) (*stage, optimize.Front, 
 		s.uses = append(s.uses, piece.Uses)
 	}
 	s.drift = drift(lots, spec.Ambient)
-	for n := 1; n < len(s.resistors); n++ {
-		front.Search.Resistor += s.resistors[n].Len()
+	s.ohms = span{math.Inf(1), 0}
+	for _, table := range s.resistors {
+		front.Search.Resistor += table.Len()
+		s.ohms = span{min(s.ohms.low, table.Values[0]), max(s.ohms.high, table.Values[table.Len()-1])}
 	}
-	for n := 1; n < len(s.capacitors); n++ {
-		front.Search.Capacitor += s.capacitors[n].Len()
+	for _, table := range s.capacitors {
+		front.Search.Capacitor += table.Len()
 	}
 	return s, front, s.useBasis()
 }
 
-// tables returns the networks by number of parts; index 0 is nil.
+// costTables is into how many tables of ascending cost the networks of one number
+// of parts are split, so that a cheap class of networks is not searched for what
+// only a dear one could bring.
+const costTables = 6
+
+// tables returns the networks, each table of one number of parts and of some
+// costs; none is empty.
 func tables(pieces []network.Piece, most int) ([]*network.Table, error) {
 	forest, err := network.Grow(pieces, most)
 	if err != nil {
 		return nil, err
 	}
-	found := []*network.Table{nil}
+	var found []*network.Table
 	for n := 1; n <= most; n++ {
-		found = append(found, forest.Table(n))
+		found = append(found, forest.Table(n).ByCost(costTables)...)
 	}
 	return found, nil
 }
@@ -137,9 +158,9 @@ func (s *stage) fit(c *candidate) optimize.Fit {
 func (s *stage) values(c *candidate) timer.Values {
 	values := timer.Values{Diode: c.setup.diode}
 	for i := range c.setup.circuit.Resistors {
-		values.Ohms[i] = s.resistors[c.ohms[i].parts].Values[c.ohms[i].row]
+		values.Ohms[i] = s.resistors[c.ohms[i].table].Values[c.ohms[i].row]
 	}
-	values.Farads = s.capacitors[c.farad.parts].Values[c.farad.row]
+	values.Farads = s.capacitors[c.farad.table].Values[c.farad.row]
 	return values
 }
 

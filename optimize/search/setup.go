@@ -143,7 +143,8 @@ func (s *stage) addWithDiodes(base setup, diodes []optimize.Pool) (why string) {
 }
 
 func (s *stage) add(with setup) {
-	with.index = len(s.setups)
+	with.stage, with.index = s, len(s.setups)
+	with.first = map[int32][]phaseBounds{}
 	with.order = assignmentOrder(with.circuit, &with.conditions, with.diode)
 	s.setups = append(s.setups, with)
 }
