@@ -9,18 +9,9 @@ import (
 	"strings"
 	"sync"
 	"testing"
-	"time"
 
 	"tickdrawer/inventory"
 )
-
-func tryOpen(path string, create bool) error {
-	d, err := Open(context.Background(), path, Options{Create: create, Now: func() time.Time { return noon }, Who: "tester"})
-	if err == nil {
-		err = d.Close()
-	}
-	return err
-}
 
 func TestOpenRefusesWhatIsNoDrawer(t *testing.T) {
 	folder := t.TempDir()
@@ -159,8 +150,7 @@ func TestEveryConnectionHasThePragmas(t *testing.T) {
 // What an older program made is opened with all that was in it.
 func TestOpenMigratesFromEveryVersion(t *testing.T) {
 	ctx := context.Background()
-	newest := fresh(t)
-	provider, err := newest.migrations()
+	provider, err := fresh(t).migrations()
 	if err != nil {
 		t.Fatal(err)
 	}
