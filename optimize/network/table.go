@@ -27,6 +27,24 @@ type Table struct {
 // Table returns the networks of exactly the given number of parts. Of networks
 // with the same value and the same usage of lots one stands, the first.
 func (f *Forest) Table(parts int) *Table {
+	t := f.structures(parts)
+	if parts > 2 { // two pieces have no two ways to one value
+		t.numbers = f.distinct(t.numbers)
+	}
+	t.fill()
+	return t
+}
+
+// Structures returns the networks of exactly the given number of parts, every
+// one: networks of one value and usage can differ in how far tolerances move
+// them.
+func (f *Forest) Structures(parts int) *Table {
+	t := f.structures(parts)
+	t.fill()
+	return t
+}
+
+func (f *Forest) structures(parts int) *Table {
 	t := &Table{Parts: parts, forest: f}
 	for number := f.start[parts]; number < f.start[parts+1]; number++ {
 		t.numbers = append(t.numbers, int32(number))
@@ -34,10 +52,6 @@ func (f *Forest) Table(parts int) *Table {
 	slices.SortFunc(t.numbers, func(a, b int32) int {
 		return cmp.Or(cmp.Compare(f.nodes[a].value, f.nodes[b].value), cmp.Compare(a, b))
 	})
-	if parts > 2 { // two pieces have no two ways to one value
-		t.numbers = f.distinct(t.numbers)
-	}
-	t.fill()
 	return t
 }
 

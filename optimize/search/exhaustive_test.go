@@ -10,7 +10,9 @@ import (
 	"pgregory.net/rapid"
 
 	"tickdrawer/inventory"
+	"tickdrawer/inventory/marking"
 	"tickdrawer/optimize"
+	"tickdrawer/optimize/spread"
 	"tickdrawer/optimize/timer"
 )
 
@@ -18,18 +20,26 @@ import (
 // lots in two in every way, with no sharing, ordering or bound in common with
 // the tables under test.
 type plainNetwork struct {
-	value float64
-	usage map[inventory.LotID]int64
-	parts int
-	cost  inventory.Micros
-	polar bool // holds a polarised part
+	value       float64
+	least, most float64 // over tolerance and temperature
+	usage       map[inventory.LotID]int64
+	parts       int
+	cost        inventory.Micros
+	polar       bool // holds a polarised part
 }
 
-func plainNetworks(lots []inventory.Lot, kind inventory.Kind, most int) []plainNetwork {
+func plainNetworks(lots []inventory.Lot, kind inventory.Kind, most int, ambient optimize.Range) []plainNetwork {
 	byParts := make([][]plainNetwork, most+1)
 	for _, lot := range lots {
 		if lot.Part.Kind == kind && lot.Available() > 0 {
-			n := plainNetwork{lot.Value(), map[inventory.LotID]int64{lot.ID: 1}, 1, 0, lot.Part.Polarised()}
+			n := plainNetwork{lot.Value(), lot.Value(), lot.Value(), map[inventory.LotID]int64{lot.ID: 1}, 1, 0, lot.Part.Polarised()}
+			if t := lot.Part.Tolerance; t != nil && lot.Measured == 0 {
+				n.least, n.most = n.least*(1-t.Minus), n.most*(1+t.Plus)
+			}
+			if ppm := lot.Part.TempcoPPM; ppm != nil {
+				cold, hot := *ppm*1e-6*(ambient.Min-25), *ppm*1e-6*(ambient.Max-25)
+				n.least, n.most = n.least*(1+min(cold, hot)), n.most*(1+max(cold, hot))
+			}
 			if lot.UnitCost != nil {
 				n.cost = *lot.UnitCost
 			}
@@ -46,17 +56,21 @@ func plainNetworks(lots []inventory.Lot, kind inventory.Kind, most int) []plainN
 							usage[id] += n
 						}
 					}
-					sum := a.value + b.value
-					ratio := b.value * a.value / (b.value + a.value)
-					polar := a.polar || b.polar
+					sum := func(x, y float64) float64 { return x + y }
+					ratio := func(x, y float64) float64 { return y * x / (y + x) }
+					join := func(f func(x, y float64) float64) {
+						byParts[parts] = append(byParts[parts], plainNetwork{
+							f(a.value, b.value), f(a.least, b.least), f(a.most, b.most), usage, parts, a.cost + b.cost, a.polar || b.polar,
+						})
+					}
 					series, parallel := sum, ratio
 					if kind == inventory.Capacitor {
 						series, parallel = ratio, sum
 					}
-					if !polar {
-						byParts[parts] = append(byParts[parts], plainNetwork{series, usage, parts, a.cost + b.cost, polar})
+					if !a.polar && !b.polar {
+						join(series)
 					}
-					byParts[parts] = append(byParts[parts], plainNetwork{parallel, usage, parts, a.cost + b.cost, polar})
+					join(parallel)
 				}
 			}
 		}
@@ -88,8 +102,9 @@ func covered(lots []inventory.Lot, boards int64, networks ...*plainNetwork) bool
 
 // plainFits returns every fit of the circuit with the ideal timer.
 func plainFits(spec optimize.Spec, circuit *timer.Circuit, lots []inventory.Lot, diode timer.Diode, extraParts int, extraCost inventory.Micros) []plainFit {
-	resistors := plainNetworks(lots, inventory.Resistor, spec.PartsEach)
-	capacitors := plainNetworks(lots, inventory.Capacitor, spec.PartsC)
+	resistors := plainNetworks(lots, inventory.Resistor, spec.PartsEach, spec.Ambient)
+	capacitors := plainNetworks(lots, inventory.Capacitor, spec.PartsC, spec.Ambient)
+	around := spread.Surroundings{Device: &timer.Ideal, SupplyV: spec.Supply, AmbientC: spec.Ambient}
 	conditions, err := timer.Ideal.Under(spec.Supply.Nominal, spec.Ambient.Nominal, 0, 0)
 	if err != nil {
 		panic(err)
@@ -119,7 +134,19 @@ func plainFits(spec optimize.Spec, circuit *timer.Circuit, lots []inventory.Lot,
 				fit.parts += n.parts
 				fit.cost += n.cost
 			}
-			fit.used = spec.AllowanceUsed(timesOf(circuit, circuit.Phases(&conditions, &values)))
+			if spec.Basis == optimize.WorstCase {
+				bands := spread.Values{Farads: optimize.Band{Min: c.least, Max: c.most}}
+				for j, n := range chosen {
+					bands.Ohms[j] = optimize.Band{Min: n.least, Max: n.most}
+				}
+				band, err := spread.WorstCase(circuit, around, &bands, diode)
+				if err != nil {
+					panic(err)
+				}
+				fit.used = spec.WorstAllowanceUsed(band)
+			} else {
+				fit.used = spec.AllowanceUsed(timesOf(circuit, circuit.Phases(&conditions, &values)))
+			}
 			if fit.used <= 1+roundoff {
 				fits = append(fits, fit)
 			}
@@ -165,6 +192,15 @@ func drawLots(t *rapid.T, kind inventory.Kind, first inventory.LotID, values []f
 			part.Dielectric = "electrolytic"
 		}
 		lot := inventory.Lot{ID: first + inventory.LotID(i), Part: part, OnHand: rapid.SampledFrom([]int64{9, 6, 4, 3, 2, 1}).Draw(t, "pieces")}
+		if percent := rapid.SampledFrom([]float64{1, 5, 0}).Draw(t, "tolerance"); percent > 0 {
+			lot.Part.Tolerance = &marking.Tolerance{Minus: percent / 100, Plus: percent / 100}
+		}
+		if ppm := rapid.SampledFrom([]float64{0, 0, 200, -700}).Draw(t, "tempco"); ppm != 0 {
+			lot.Part.TempcoPPM = &ppm
+		}
+		if rapid.IntRange(0, 4).Draw(t, "measured") == 0 {
+			lot.Measured = part.Value * 1.013
+		}
 		lot.Reserved = rapid.Int64Range(0, lot.OnHand/3).Draw(t, "reserved")
 		if rapid.Bool().Draw(t, "costed") {
 			cost := inventory.Micros(rapid.Int64Range(1, 3).Draw(t, "cost")) * 10_000
@@ -200,10 +236,11 @@ func frontEqualsExhaustiveEnumeration(t *testing.T, circuit *timer.Circuit) {
 		lots := drawLots(t, inventory.Resistor, 1, ohms, most)
 		lots = append(lots, drawLots(t, inventory.Capacitor, 101, farads, 3)...)
 		spec := optimize.Spec{
-			Supply: optimize.Exactly(9), Ambient: optimize.Exactly(25),
+			Supply: optimize.Exactly(9), Ambient: rapid.SampledFrom([]optimize.Range{optimize.Exactly(25), {Nominal: 35, Min: 30, Max: 40}}).Draw(t, "ambient"),
 			Circuits: []string{circuit.Slug}, Timers: []string{"ideal"},
 			PartsEach: rapid.SampledFrom([]int{2, 1}).Draw(t, "parts_each"), PartsC: rapid.SampledFrom([]int{2, 1}).Draw(t, "parts_c"),
 			Boards:     rapid.Int64Range(1, 3).Draw(t, "boards"),
+			Basis:      rapid.SampledFrom([]optimize.Basis{optimize.Nominal, optimize.WorstCase}).Draw(t, "basis"),
 			Resolution: rapid.SampledFrom([]float64{0, 0.001, 0.1}).Draw(t, "resolution"),
 		}
 		if len(circuit.Resistors) == 1 && rapid.Bool().Draw(t, "three") {
@@ -223,7 +260,7 @@ func frontEqualsExhaustiveEnumeration(t *testing.T, circuit *timer.Circuit) {
 		}
 		// Ask for what some values near the stock's give, with wide allowances,
 		// so that many fits compete.
-		conditions, err := timer.Ideal.Under(9, 25, 0, 0)
+		conditions, err := timer.Ideal.Under(9, spec.Ambient.Nominal, 0, 0)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -275,8 +312,8 @@ func frontEqualsExhaustiveEnumeration(t *testing.T, circuit *timer.Circuit) {
 			return (a.Parts-b.Parts)*1_000_000_000 + int(a.Cost-b.Cost)
 		})
 		for i, fit := range got.Fits {
-			if fit.Parts != want[i].parts || fit.Cost != want[i].cost || math.Abs(fit.UsedNominal-want[i].used) > 1e-9 {
-				t.Fatalf("fit %d: %d parts, cost %d, used %.12f; exhaustively %+v", i, fit.Parts, fit.Cost, fit.UsedNominal, want[i])
+			if fit.Parts != want[i].parts || fit.Cost != want[i].cost || math.Abs(fit.Used(spec.Basis)-want[i].used) > 1e-9 {
+				t.Fatalf("fit %d: %d parts, cost %d, used %.12f; exhaustively %+v", i, fit.Parts, fit.Cost, fit.Used(spec.Basis), want[i])
 			}
 			for id, pieces := range fit.Usage() {
 				at := slices.IndexFunc(lots, func(l inventory.Lot) bool { return l.ID == id })

@@ -81,10 +81,10 @@ func prepare(spec optimize.Spec, lots []inventory.Lot) (*stage, optimize.Front, 
 		return nil, front, err
 	}
 	resistors := pieces(lots, inventory.Resistor, spec.Boards)
-	if s.resistors, err = tables(resistors, spec.PartsEach); err != nil {
+	if s.resistors, err = tables(resistors, spec.PartsEach, spec.Basis); err != nil {
 		return nil, front, err
 	}
-	if s.capacitors, err = tables(pieces(lots, inventory.Capacitor, spec.Boards), spec.PartsC); err != nil {
+	if s.capacitors, err = tables(pieces(lots, inventory.Capacitor, spec.Boards), spec.PartsC, spec.Basis); err != nil {
 		return nil, front, err
 	}
 	for _, piece := range resistors {
@@ -109,14 +109,18 @@ const costTables = 6
 
 // tables returns the networks, each table of one number of parts and of some
 // costs; none is empty.
-func tables(pieces []network.Piece, most int) ([]*network.Table, error) {
+func tables(pieces []network.Piece, most int, basis optimize.Basis) ([]*network.Table, error) {
 	forest, err := network.Grow(pieces, most)
 	if err != nil {
 		return nil, err
 	}
 	var found []*network.Table
 	for n := 1; n <= most; n++ {
-		found = append(found, forest.Table(n).ByCost(costTables)...)
+		table := forest.Table
+		if basis != optimize.Nominal { // equal values may spread unequally
+			table = forest.Structures
+		}
+		found = append(found, table(n).ByCost(costTables)...)
 	}
 	return found, nil
 }
