@@ -2,9 +2,7 @@ package main
 
 import (
 	"context"
-	"errors"
 	"fmt"
-	"os"
 	"slices"
 	"strings"
 
@@ -123,22 +121,6 @@ func (p *program) runCheck(ctx context.Context, flags checkFlags, given []string
 	}
 	if !runs {
 		return errUnmet
-	}
-	return nil
-}
-
-// writeNew writes a file that must not exist yet.
-func writeNew(name string, content []byte) error {
-	file, err := os.OpenFile(name, os.O_CREATE|os.O_EXCL|os.O_WRONLY, 0o644)
-	if errors.Is(err, os.ErrExist) {
-		return fmt.Errorf("%s exists already and is not replaced: name a new file", name)
-	}
-	if err == nil {
-		_, err = file.Write(content)
-		err = errors.Join(err, file.Close())
-	}
-	if err != nil {
-		return fmt.Errorf("%s: %w", name, systemReason(err))
 	}
 	return nil
 }

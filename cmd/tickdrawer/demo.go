@@ -11,6 +11,7 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"tickdrawer/importers"
 	"tickdrawer/testdata"
 )
 
@@ -56,7 +57,7 @@ func (p *program) runDemo(ctx context.Context, folder string) error {
 	if jsonRun {
 		p.json, p.out = false, p.errOut
 	}
-	err = p.runImport(ctx, tables, importFlags{})
+	err = p.runImport(ctx, tables, importers.Options{}, importFlags{})
 	p.json, p.out = jsonRun, out
 	if err != nil {
 		return err

@@ -1,20 +1,16 @@
 package main
 
 import (
-	"bytes"
 	"context"
 	"errors"
 	"fmt"
-	"io"
 	"io/fs"
 	"os"
 	"path/filepath"
-	"strings"
 
 	"github.com/spf13/cobra"
 
 	"tickdrawer/importers"
-	"tickdrawer/inventory"
 	"tickdrawer/inventory/sqlite"
 )
 
@@ -49,7 +45,11 @@ A column that is not recognised goes into the note; --column names it.`,
 			return nil
 		},
 		RunE: func(command *cobra.Command, files []string) error {
-			return p.runImport(command.Context(), files, flags)
+			options, err := flags.options(command.Flags().Changed)
+			if err != nil {
+				return err
+			}
+			return p.runImport(command.Context(), files, options, flags)
 		},
 	}
 	f := command.Flags()
@@ -64,79 +64,18 @@ A column that is not recognised goes into the note; --column names it.`,
 	return command
 }
 
-func (f importFlags) options() (importers.Options, error) {
-	options := importers.Options{Columns: map[string]string{}, Encoding: f.encoding, Stocktake: f.stocktake}
-	for _, pair := range f.columns {
-		at := strings.LastIndex(pair, "=")
-		if at < 1 || at == len(pair)-1 {
-			return options, usagef("--column %q is not THEIRS=FIELD, such as \"Wert=value\"", pair)
-		}
-		options.Columns[pair[:at]] = pair[at+1:]
+func (p *program) runImport(ctx context.Context, files []string, options importers.Options, flags importFlags) error {
+	tables, err := p.readTables(files, options)
+	for _, table := range tables {
+		p.noteTable(table)
 	}
-	if f.kind != "" {
-		kind, err := inventory.ParseKind(f.kind)
-		if err != nil {
-			return options, usageError{fmt.Errorf("--kind: %w", err)}
-		}
-		options.Kind = kind
-	}
-	switch characters := []rune(f.delimiter); {
-	case f.delimiter == "tab" || f.delimiter == `\t`:
-		options.Delimiter = '\t'
-	case len(characters) == 1:
-		options.Delimiter = characters[0]
-	case len(characters) > 1:
-		return options, usagef("--delimiter %q is not one character, nor tab", f.delimiter)
-	}
-	return options, nil
-}
-
-type rejectedDocument struct {
-	Line   int    `json:"line"`
-	Column string `json:"column"`
-	Value  string `json:"value"`
-	Reason string `json:"reason"`
-}
-
-type importedFileDocument struct {
-	File     string             `json:"file"`
-	Rows     int                `json:"rows"`
-	Booked   int                `json:"booked"`
-	Rejected []rejectedDocument `json:"rejected"`
-	Detected string             `json:"detected"`
-	Rejects  string             `json:"rejects,omitempty"`
-}
-
-type importDocument struct {
-	Files          []importedFileDocument `json:"files"`
-	LotsCreated    int                    `json:"lots_created"`
-	QuantityBooked int64                  `json:"quantity_booked"`
-	DryRun         bool                   `json:"dry_run"`
-}
-
-func (p *program) runImport(ctx context.Context, files []string, flags importFlags) error {
-	options, err := flags.options()
 	if err != nil {
 		return err
 	}
-	var tables []importers.Table
+	document := documentOfImport(files, tables, flags.dryRun)
 	bad := 0
-	for _, file := range files {
-		table, err := p.readTable(file, options)
-		if err != nil {
-			return err
-		}
-		bad += len(table.Rejected)
-		tables = append(tables, table)
-	}
-	document := importDocument{DryRun: flags.dryRun}
 	for _, table := range tables {
-		p.noteTable(table)
-		entry := importedFileDocument{File: table.File, Rows: table.RowCount(), Booked: len(table.Rows), Rejected: []rejectedDocument{}, Detected: table.Detected}
-		for _, problem := range table.Problems {
-			entry.Rejected = append(entry.Rejected, rejectedDocument{problem.Line, problem.Column, problem.Value, problem.Reason})
-		}
-		document.Files = append(document.Files, entry)
+		bad += len(table.Rejected)
 	}
 	if bad > 0 && !flags.skipBad {
 		for i := range document.Files {
@@ -149,18 +88,15 @@ func (p *program) runImport(ctx context.Context, files []string, flags importFla
 		}
 		return fmt.Errorf("nothing was booked: %s cannot be; mend them, or book the others with --skip-bad", counted(bad, "row"))
 	}
+	var written []string
 	if flags.skipBad && !flags.dryRun {
-		if err := p.writeRejects(tables, document.Files); err != nil {
+		if written, err = writeRejects(tables, document.Files); err != nil {
 			return err
 		}
 	}
 	booking, err := p.book(ctx, tables, flags)
 	if err != nil {
-		for _, entry := range document.Files {
-			if entry.Rejects != "" {
-				os.Remove(entry.Rejects) // nothing was left out, since nothing was booked
-			}
-		}
+		removeAll(written) // nothing was left out, since nothing was booked
 		return err
 	}
 	document.LotsCreated, document.QuantityBooked = booking.LotsCreated, booking.QuantityBooked
@@ -171,30 +107,36 @@ func (p *program) runImport(ctx context.Context, files []string, flags importFla
 	return nil
 }
 
-// readTable reads a file, or standard input for "-".
-func (p *program) readTable(file string, options importers.Options) (importers.Table, error) {
-	source := p.in
-	if file != "-" {
-		opened, err := os.Open(file)
+// readTables reads the files. The error names every file that is no parts list;
+// the tables of the others come with it.
+func (p *program) readTables(files []string, options importers.Options) ([]importers.Table, error) {
+	var tables []importers.Table
+	var wrong []error
+	for _, file := range files {
+		table, err := p.readTable(file, options)
 		if err != nil {
-			return importers.Table{}, fmt.Errorf("%s: %w", file, systemReason(err))
+			wrong = append(wrong, err)
+			continue
 		}
-		defer opened.Close()
-		if info, err := opened.Stat(); err == nil && info.IsDir() {
-			return importers.Table{}, fmt.Errorf("%s is a folder: name a CSV file", file)
-		}
-		source = opened
+		tables = append(tables, table)
 	}
-	return importers.ReadFrom(file, source, options)
+	return tables, errors.Join(wrong...)
 }
 
-// systemReason returns what the system says without the call and the path.
-func systemReason(err error) error {
-	var path *fs.PathError
-	if errors.As(err, &path) {
-		return path.Err
+// readTable reads a file, or standard input for "-".
+func (p *program) readTable(file string, options importers.Options) (importers.Table, error) {
+	if file == "-" {
+		return importers.ReadFrom("standard input", p.in, options)
 	}
-	return err
+	opened, err := os.Open(file)
+	if err != nil {
+		return importers.Table{}, fmt.Errorf("%s: %w", file, systemReason(err))
+	}
+	defer opened.Close()
+	if about, err := opened.Stat(); err == nil && about.IsDir() {
+		return importers.Table{}, fmt.Errorf("%s is a folder: name a CSV file", file)
+	}
+	return importers.ReadFrom(file, opened, options)
 }
 
 // noteTable says what was found in a file and what is wrong with it.
@@ -216,48 +158,37 @@ func (p *program) noteTable(table importers.Table) {
 }
 
 // writeRejects writes the rows that are left out beside their files, before
-// anything is booked, so that no row is lost.
-func (p *program) writeRejects(tables []importers.Table, entries []importedFileDocument) error {
+// anything is booked, so that no row is lost. It returns the files written; on an
+// error there are none.
+func writeRejects(tables []importers.Table, entries []importedFileDocument) (written []string, err error) {
 	for i, table := range tables {
 		content := importers.Rejects(table)
 		if content == nil {
 			continue
 		}
-		name := table.File + ".rejects.csv"
-		if table.File == "-" {
+		name := entries[i].File + ".rejects.csv"
+		if entries[i].File == "-" {
 			name = "stdin.rejects.csv"
 		}
-		file, err := os.OpenFile(name, os.O_CREATE|os.O_EXCL|os.O_WRONLY, 0o644)
-		if errors.Is(err, fs.ErrExist) {
-			return fmt.Errorf("%s exists already and is not replaced; nothing was booked; move it away first", name)
+		if _, err = os.Lstat(name); err == nil {
+			err = fmt.Errorf("%s exists already and is not replaced: move it away first", name)
+		} else {
+			err = writeNew(name, content)
 		}
 		if err != nil {
-			return fmt.Errorf("%s: %w; nothing was booked", name, systemReason(err))
-		}
-		_, err = io.Copy(file, bytes.NewReader(content))
-		if err = errors.Join(err, file.Close()); err != nil {
-			return fmt.Errorf("%s: %w; nothing was booked", name, systemReason(err))
+			removeAll(written)
+			return nil, fmt.Errorf("nothing was booked: %w", err)
 		}
 		entries[i].Rejects = name
+		written = append(written, name)
 	}
-	return nil
+	return written, nil
 }
 
+// book books the tables. A drawer that is not there yet is made by its first
+// booking: a trial run in a scratch drawer comes before it, so that what cannot
+// be booked leaves no empty drawer.
 func (p *program) book(ctx context.Context, tables []importers.Table, flags importFlags) (sqlite.Booking, error) {
-	path := p.drawerPath()
-	if _, err := os.Stat(path); flags.dryRun && errors.Is(err, fs.ErrNotExist) {
-		scratch, err := os.MkdirTemp("", "tickdrawer-dry-run-")
-		if err != nil {
-			return sqlite.Booking{}, err
-		}
-		defer os.RemoveAll(scratch)
-		path = filepath.Join(scratch, "stock.drawer")
-	}
-	drawer, err := sqlite.Open(ctx, path, sqlite.Options{Create: true, Now: p.now, Who: p.who})
-	if err != nil {
-		return sqlite.Booking{}, err
-	}
-	defer drawer.Close()
 	intake := sqlite.Intake{Stocktake: flags.stocktake, Again: flags.again, DryRun: flags.dryRun}
 	for _, table := range tables {
 		file := sqlite.IntakeFile{Name: table.File, SHA256: table.SHA256}
@@ -266,6 +197,27 @@ func (p *program) book(ctx context.Context, tables []importers.Table, flags impo
 		}
 		intake.Files = append(intake.Files, file)
 	}
+	path := p.drawerPath()
+	if _, err := os.Stat(path); errors.Is(err, fs.ErrNotExist) {
+		scratch, err := os.MkdirTemp("", "tickdrawer-trial-")
+		if err != nil {
+			return sqlite.Booking{}, fmt.Errorf("a trial run needs room for a file: %w", err)
+		}
+		defer os.RemoveAll(scratch)
+		booking, err := p.bookInto(ctx, filepath.Join(scratch, "stock.drawer"), intake)
+		if err != nil || flags.dryRun {
+			return booking, err
+		}
+	}
+	return p.bookInto(ctx, path, intake)
+}
+
+func (p *program) bookInto(ctx context.Context, path string, intake sqlite.Intake) (sqlite.Booking, error) {
+	drawer, err := sqlite.Open(ctx, path, sqlite.Options{Create: true, Now: p.now, Who: p.who})
+	if err != nil {
+		return sqlite.Booking{}, err
+	}
+	defer drawer.Close()
 	return drawer.Book(ctx, intake)
 }
 
@@ -291,12 +243,4 @@ func (p *program) printImport(document importDocument, booking sqlite.Booking, f
 			p.printf("left out: see %s", file.Rejects)
 		}
 	}
-}
-
-// counted returns the number with its noun, in the plural where it is not one.
-func counted[N int | int64](n N, noun string) string {
-	if n == 1 {
-		return "1 " + noun
-	}
-	return fmt.Sprintf("%d %ss", n, noun)
 }

@@ -24,6 +24,11 @@ type movementDocument struct {
 	Source   string                 `json:"source,omitempty"`
 }
 
+type movementsDocument struct {
+	Kit       inventory.KitID    `json:"kit,omitempty"` // that was moved
+	Movements []movementDocument `json:"movements"`
+}
+
 func documentsOfMovements(movements []inventory.Movement) []movementDocument {
 	documents := make([]movementDocument, len(movements))
 	for i, m := range movements {
@@ -36,6 +41,7 @@ func documentsOfMovements(movements []inventory.Movement) []movementDocument {
 
 func (p *program) ledgerCommand() *cobra.Command {
 	var lot, kit int64
+	var since string
 	command := &cobra.Command{
 		Use:   "ledger",
 		Short: "List who moved what when",
@@ -45,25 +51,48 @@ stock.`,
 		Example: `  tickdrawer ledger --lot 12`,
 		Args:    arguments(),
 		RunE: func(command *cobra.Command, _ []string) error {
+			filter, err := ledgerFilter(command.Flags().Changed, lot, kit, since)
+			if err != nil {
+				return err
+			}
 			drawer, err := p.openDrawer(command.Context(), false)
 			if err != nil {
 				return err
 			}
 			defer drawer.Close()
-			movements, err := drawer.Movements(command.Context(), sqlite.Filter{Lot: inventory.LotID(lot), Kit: inventory.KitID(kit)})
+			movements, err := drawer.Movements(command.Context(), filter)
 			if err != nil {
 				return err
 			}
 			if p.json {
-				return p.printJSON(map[string]any{"movements": documentsOfMovements(movements)})
+				return p.printJSON(movementsDocument{Movements: documentsOfMovements(movements)})
 			}
 			p.printMovements(movements)
 			return nil
 		},
 	}
-	command.Flags().Int64Var(&lot, "lot", 0, "only movements of the `LOT`")
-	command.Flags().Int64Var(&kit, "kit", 0, "only movements of the `KIT`")
+	command.Flags().Int64Var(&lot, "lot", 0, "only movements of this `LOT`")
+	command.Flags().Int64Var(&kit, "kit", 0, "only movements of this `KIT`")
+	command.Flags().StringVar(&since, "since", "", "only movements from this `DATE` on, such as 2026-03-01 (UTC)")
 	return command
+}
+
+// ledgerFilter returns which movements the flags ask for.
+func ledgerFilter(given func(flag string) bool, lot, kit int64, since string) (sqlite.Filter, error) {
+	filter := sqlite.Filter{Lot: inventory.LotID(lot), Kit: inventory.KitID(kit)}
+	if given("lot") && lot < 1 {
+		return filter, usagef("--lot %d is no lot: lots are numbered from 1", lot)
+	}
+	if given("kit") && kit < 1 {
+		return filter, usagef("--kit %d is no kit: kits are numbered from 1", kit)
+	}
+	if given("since") {
+		var err error
+		if filter.Since, err = time.Parse(time.DateOnly, since); err != nil {
+			return filter, usagef("--since %q is no date: write it as 2026-03-01", since)
+		}
+	}
+	return filter, nil
 }
 
 func (p *program) printMovements(movements []inventory.Movement) {
@@ -73,7 +102,7 @@ func (p *program) printMovements(movements []inventory.Movement) {
 	}
 	columns := []column{
 		{title: "NO", right: true}, {title: "TIME (UTC)"}, {title: "WHO"}, {title: "WHAT"}, {title: "PIECES", right: true}, {title: "LEFT", right: true},
-		{title: "LOT", right: true}, {title: "BIN"}, {title: "PART", wraps: true}, {title: "FOR"},
+		{title: "LOT", right: true}, {title: "BIN"}, {title: "PART", wraps: true}, {title: "FOR", wraps: true},
 	}
 	var rows [][]string
 	for _, m := range movements {
@@ -82,7 +111,7 @@ func (p *program) printMovements(movements []inventory.Movement) {
 			cause = fmt.Sprintf("kit %d", m.Kit)
 		}
 		rows = append(rows, []string{
-			fmt.Sprint(m.ID), m.At.Format("2006-01-02 15:04:05"), m.Who, string(m.Kind), fmt.Sprintf("%+d", m.Delta), fmt.Sprint(m.Balance),
+			fmt.Sprint(m.ID), m.At.Format(time.DateTime), m.Who, string(m.Kind), fmt.Sprintf("%+d", m.Delta), fmt.Sprint(m.Balance),
 			fmt.Sprint(m.Lot), m.Bin, m.Part.Name(), cause,
 		})
 	}
@@ -108,7 +137,10 @@ stock, and checks the drawer's file. Anything found ends with status 1.`,
 				return err
 			}
 			if p.json {
-				if err := p.printJSON(map[string]any{"sound": len(findings) == 0, "findings": append([]string{}, findings...)}); err != nil {
+				if err := p.printJSON(struct {
+					Sound    bool     `json:"sound"`
+					Findings []string `json:"findings"`
+				}{len(findings) == 0, append([]string{}, findings...)}); err != nil {
 					return err
 				}
 			} else {
@@ -145,7 +177,10 @@ checks the copy. It never replaces a file.`,
 				return err
 			}
 			if p.json {
-				return p.printJSON(map[string]any{"drawer": p.drawerPath(), "backup": names[0]})
+				return p.printJSON(struct {
+					Drawer string `json:"drawer"`
+					Backup string `json:"backup"`
+				}{p.drawerPath(), names[0]})
 			}
 			p.printf("%s copied to %s and checked", p.drawerPath(), names[0])
 			return nil

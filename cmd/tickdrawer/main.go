@@ -22,8 +22,9 @@ func main() { os.Exit(mainStatus()) }
 func mainStatus() int {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
+	context.AfterFunc(ctx, stop) // a second interrupt ends the program at once
 	p := program{
-		in: os.Stdin, out: os.Stdout, errOut: os.Stderr,
+		in: interruptible(ctx, os.Stdin), out: os.Stdout, errOut: os.Stderr,
 		env: os.Getenv, now: time.Now, who: userName(), width: unlimited,
 		name: "tickdrawer",
 	}

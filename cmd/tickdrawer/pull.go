@@ -80,7 +80,7 @@ func (p *program) moveKit(ctx context.Context, argument, done string, move func(
 		return err
 	}
 	if p.json {
-		return p.printJSON(map[string]any{"kit": id, "movements": documentsOfMovements(movements)})
+		return p.printJSON(movementsDocument{Kit: id, Movements: documentsOfMovements(movements)})
 	}
 	p.printMovements(movements)
 	pieces := int64(0)
@@ -90,6 +90,26 @@ func (p *program) moveKit(ctx context.Context, argument, done string, move func(
 	p.printf("")
 	p.printf("kit %d: %s %s, movements %d to %d", id, counted(pieces, "piece"), done, movements[0].ID, movements[len(movements)-1].ID)
 	return nil
+}
+
+type keptKitDocument struct {
+	Kit       inventory.KitID    `json:"kit"`
+	Job       string             `json:"job"`
+	State     inventory.KitState `json:"state"`
+	CreatedAt string             `json:"created_at"` // RFC 3339, UTC
+	Boards    boardsDocument     `json:"boards"`
+}
+
+type kitsDocument struct {
+	Kits []keptKitDocument `json:"kits"`
+}
+
+func documentOfKits(kits []inventory.Kit) kitsDocument {
+	document := kitsDocument{Kits: []keptKitDocument{}}
+	for _, kit := range kits {
+		document.Kits = append(document.Kits, keptKitDocument{kit.ID, kit.Job, kit.State, kit.CreatedAt.Format(time.RFC3339), boardsDocument{kit.Wanted, kit.Boards}})
+	}
+	return document
 }
 
 func (p *program) kitsCommand() *cobra.Command {
@@ -110,14 +130,7 @@ func (p *program) kitsCommand() *cobra.Command {
 				return err
 			}
 			if p.json {
-				documents := []map[string]any{}
-				for _, kit := range kits {
-					documents = append(documents, map[string]any{
-						"kit": kit.ID, "job": kit.Job, "state": kit.State, "created_at": kit.CreatedAt.Format(time.RFC3339),
-						"boards": map[string]int64{"wanted": kit.Wanted, "built": kit.Boards},
-					})
-				}
-				return p.printJSON(map[string]any{"kits": documents})
+				return p.printJSON(documentOfKits(kits))
 			}
 			if len(kits) == 0 {
 				p.printf("no kit is planned: \"tickdrawer kit JOB.yaml\" plans one")
@@ -135,6 +148,20 @@ func (p *program) kitsCommand() *cobra.Command {
 	}
 }
 
+func (p *program) reserveCommand() *cobra.Command {
+	return &cobra.Command{
+		Use:   "reserve KIT",
+		Short: "Hold the picks of a planned kit",
+		Long: `Reserve holds the pieces of a planned or released kit for it: other plans and
+pulls leave them alone until it is pulled or released.`,
+		Example: `  tickdrawer reserve 1`,
+		Args:    arguments("KIT"),
+		RunE: func(command *cobra.Command, args []string) error {
+			return p.changeKit(command.Context(), args[0], inventory.KitReserved, (*sqlite.Drawer).Reserve, "its picks are held for it")
+		},
+	}
+}
+
 func (p *program) releaseCommand() *cobra.Command {
 	return &cobra.Command{
 		Use:     "release KIT",
@@ -143,23 +170,31 @@ func (p *program) releaseCommand() *cobra.Command {
 		Example: `  tickdrawer release 1`,
 		Args:    arguments("KIT"),
 		RunE: func(command *cobra.Command, args []string) error {
-			id, err := kitNumber(args[0])
-			if err != nil {
-				return err
-			}
-			drawer, err := p.openDrawer(command.Context(), false)
-			if err != nil {
-				return err
-			}
-			defer drawer.Close()
-			if err := drawer.Release(command.Context(), id); err != nil {
-				return err
-			}
-			if p.json {
-				return p.printJSON(map[string]any{"kit": id, "state": inventory.KitReleased})
-			}
-			p.printf("kit %d holds nothing any more", id)
-			return nil
+			return p.changeKit(command.Context(), args[0], inventory.KitReleased, (*sqlite.Drawer).Release, "it holds nothing any more")
 		},
 	}
+}
+
+// changeKit brings the kit into the state and says so.
+func (p *program) changeKit(ctx context.Context, argument string, state inventory.KitState, change func(*sqlite.Drawer, context.Context, inventory.KitID) error, done string) error {
+	id, err := kitNumber(argument)
+	if err != nil {
+		return err
+	}
+	drawer, err := p.openDrawer(ctx, false)
+	if err != nil {
+		return err
+	}
+	defer drawer.Close()
+	if err := change(drawer, ctx, id); err != nil {
+		return err
+	}
+	if p.json {
+		return p.printJSON(struct {
+			Kit   inventory.KitID    `json:"kit"`
+			State inventory.KitState `json:"state"`
+		}{id, state})
+	}
+	p.printf("kit %d is %s: %s", id, state, done)
+	return nil
 }

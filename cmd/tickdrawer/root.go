@@ -2,9 +2,7 @@ package main
 
 import (
 	"context"
-	"encoding/json"
 	"errors"
-	"fmt"
 	"io"
 	"path/filepath"
 	"strings"
@@ -40,39 +38,39 @@ type program struct {
 	started    bool // a command's own work began: what fails now is no wrong usage
 }
 
-// usageError is wrong usage: status 2.
-type usageError struct{ error }
-
-func (e usageError) Unwrap() error { return e.error }
-
-func usagef(format string, args ...any) error { return usageError{fmt.Errorf(format, args...)} }
-
 // errUnmet ends a command whose result is printed but which the drawer does not
 // meet: status 3.
 var errUnmet = errors.New("not met")
 
 // run executes the arguments and returns the exit status.
 func (p *program) run(ctx context.Context, args []string) int {
+	out := &output{Writer: p.out}
+	p.out = out
 	root := p.rootCommand()
 	root.SetArgs(args)
 	root.SetIn(p.in)
 	root.SetOut(p.out)
 	root.SetErr(p.errOut)
 	err := root.ExecuteContext(ctx)
-	if err == nil {
+	if unknown := unknownCommand(root, args); unknown != nil {
+		err = unknown
+	}
+	switch {
+	case out.failed != nil:
+		p.notef("tickdrawer: the result cannot be printed: %v; what was booked stays booked: \"tickdrawer ledger\" lists it", systemReason(out.failed))
+		return statusFailed
+	case err == nil:
 		return statusDone
-	}
-	if errors.Is(err, errUnmet) {
+	case errors.Is(err, errUnmet):
 		return statusUnmet
+	case ctx.Err() != nil && p.started:
+		p.notef("tickdrawer: stopped: nothing was changed")
+		return statusFailed
 	}
-	message := strings.TrimRight(err.Error(), "\n")
-	if errors.Is(err, context.Canceled) {
-		message = "stopped: nothing was changed"
-	}
-	fmt.Fprintf(p.errOut, "tickdrawer: %s\n", message)
+	p.notef("tickdrawer: %s", strings.TrimRight(err.Error(), "\n"))
 	var wrong usageError
 	if errors.As(err, &wrong) || !p.started {
-		fmt.Fprintf(p.errOut, "see: tickdrawer %s--help\n", commandPath(root, args))
+		p.notef("see: %s %s--help", p.name, commandPath(root, args))
 		return statusUsage
 	}
 	return statusFailed
@@ -110,27 +108,26 @@ Not for timing on which life or property depends.`,
 	}
 	root.PersistentFlags().StringVar(&p.drawerFlag, "drawer", "", "the drawer `FILE` (else $TICKDRAWER_FILE, else the user's data directory)")
 	root.PersistentFlags().BoolVar(&p.json, "json", false, "print one JSON document, SI units, nothing else")
-	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usageError{err} })
-	root.AddCommand(
-		p.demoCommand(), p.importCommand(), p.stockCommand(),
-		p.fitCommand(), p.checkCommand(),
-		p.kitCommand(), p.kitsCommand(), p.pullCommand(), p.putbackCommand(), p.releaseCommand(),
-		p.ledgerCommand(), p.verifyCommand(), p.backupCommand(),
-	)
-	return root
-}
-
-// arguments returns a check for so many arguments with the names.
-func arguments(names ...string) cobra.PositionalArgs {
-	return func(_ *cobra.Command, given []string) error {
-		if len(given) > len(names) {
-			return usagef("%q is one argument too many", given[len(names)])
+	root.SetFlagErrorFunc(wrongFlag)
+	root.SetHelpCommand(p.helpCommand())
+	for _, group := range []struct {
+		id, title string
+		commands  []*cobra.Command
+	}{
+		{"stock", "Stock:", []*cobra.Command{p.importCommand(), p.stockCommand()}},
+		{"plan", "Plan:", []*cobra.Command{p.fitCommand(), p.checkCommand(), p.kitCommand(), p.kitsCommand()}},
+		{"book", "Hold and book:", []*cobra.Command{p.reserveCommand(), p.releaseCommand(), p.pullCommand(), p.putbackCommand()}},
+		{"keep", "Keep the drawer:", []*cobra.Command{p.ledgerCommand(), p.verifyCommand(), p.backupCommand()}},
+		{"learn", "Learn:", []*cobra.Command{p.demoCommand()}},
+	} {
+		root.AddGroup(&cobra.Group{ID: group.id, Title: group.title})
+		for _, command := range group.commands {
+			command.GroupID = group.id
+			root.AddCommand(command)
 		}
-		if len(given) < len(names) {
-			return usagef("%s is missing", names[len(given)])
-		}
-		return nil
 	}
+	root.SetHelpCommandGroupID("learn")
+	return root
 }
 
 // drawerPath returns where the drawer lies: the flag, the environment, or the
@@ -164,17 +161,3 @@ func (p *program) invocation() string {
 func (p *program) openDrawer(ctx context.Context, create bool) (*sqlite.Drawer, error) {
 	return sqlite.Open(ctx, p.drawerPath(), sqlite.Options{Create: create, Now: p.now, Who: p.who})
 }
-
-// printJSON writes the one document of a --json run.
-func (p *program) printJSON(document any) error {
-	encoder := json.NewEncoder(p.out)
-	encoder.SetEscapeHTML(false)
-	encoder.SetIndent("", "  ")
-	return encoder.Encode(document)
-}
-
-// printf writes a line for people.
-func (p *program) printf(format string, args ...any) { fmt.Fprintf(p.out, format+"\n", args...) }
-
-// notef writes a message beside the result.
-func (p *program) notef(format string, args ...any) { fmt.Fprintf(p.errOut, format+"\n", args...) }

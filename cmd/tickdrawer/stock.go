@@ -68,11 +68,15 @@ func (p *program) stockCommand() *cobra.Command {
 	command := &cobra.Command{
 		Use:   "stock",
 		Short: "List what lies in the drawer",
-		Long: `Stock lists every lot with pieces in it: on hand, reserved by kits, and available
-for new plans.`,
+		Long: `Stock lists every lot with pieces in it: on hand, reserved by kits, available
+for new plans, and what one piece costs.`,
 		Example: `  tickdrawer stock --kind capacitor`,
 		Args:    arguments(),
 		RunE: func(command *cobra.Command, _ []string) error {
+			wanted, err := kindFlag(command.Flags().Changed("kind"), kind)
+			if err != nil {
+				return err
+			}
 			drawer, err := p.openDrawer(command.Context(), false)
 			if err != nil {
 				return err
@@ -82,21 +86,15 @@ for new plans.`,
 			if err != nil {
 				return err
 			}
-			if kind != "" {
-				wanted, err := inventory.ParseKind(kind)
-				if err != nil {
-					return usageError{fmt.Errorf("--kind: %w", err)}
-				}
-				lots = slices.DeleteFunc(lots, func(l inventory.Lot) bool { return l.Part.Kind != wanted })
-			}
-			lots = slices.DeleteFunc(lots, func(l inventory.Lot) bool {
-				return bin != "" && !strings.EqualFold(l.Bin, bin) || !all && !p.json && l.OnHand == 0
+			anyBin := !command.Flags().Changed("bin")
+			lots = slices.DeleteFunc(lots, func(lot inventory.Lot) bool {
+				return wanted != "" && lot.Part.Kind != wanted || !anyBin && !strings.EqualFold(lot.Bin, bin) || !all && !p.json && lot.OnHand == 0
 			})
 			return p.printStock(lots)
 		},
 	}
-	command.Flags().StringVar(&kind, "kind", "", "only parts of the `KIND`")
-	command.Flags().StringVar(&bin, "bin", "", "only lots in the `BIN`")
+	command.Flags().StringVar(&kind, "kind", "", "only parts of this `KIND`: resistor, capacitor, diode, ...")
+	command.Flags().StringVar(&bin, "bin", "", "only lots in this `BIN`; \"\": those without a bin")
 	command.Flags().BoolVar(&all, "all", false, "empty lots too (--json always has them)")
 	return command
 }
@@ -122,15 +120,18 @@ func (p *program) printStock(lots []inventory.Lot) error {
 		return nil
 	}
 	columns := []column{
-		{title: "LOT", right: true}, {title: "BIN"}, {title: "KIND"}, {title: "PART", wraps: true}, {title: "MEASURED", right: true},
-		{title: "ON HAND", right: true}, {title: "RESERVED", right: true}, {title: "AVAILABLE", right: true}, {title: "UNIT COST", right: true},
+		{title: "LOT", right: true}, {title: "BIN"}, {title: "KIND"}, {title: "PART", wraps: true}, {title: "MEASURED", right: true, spare: true},
+		{title: "ON HAND", right: true}, {title: "RESERVED", right: true, spare: true}, {title: "AVAILABLE", right: true}, {title: "COST", right: true, spare: true},
 	}
 	var rows [][]string
 	pieces := int64(0)
 	for _, lot := range lots {
-		measured, cost := "", ""
+		measured, reserved, cost := "", "", ""
 		if lot.Measured != 0 {
 			measured = formatValue(lot.Part.Kind, lot.Measured)
+		}
+		if lot.Reserved != 0 {
+			reserved = fmt.Sprint(lot.Reserved)
 		}
 		if lot.UnitCost != nil {
 			cost = formatCost(*lot.UnitCost)
@@ -138,7 +139,7 @@ func (p *program) printStock(lots []inventory.Lot) error {
 		pieces += lot.OnHand
 		rows = append(rows, []string{
 			fmt.Sprint(lot.ID), lot.Bin, string(lot.Part.Kind), lot.Part.Name(), measured,
-			fmt.Sprint(lot.OnHand), fmt.Sprint(lot.Reserved), fmt.Sprint(lot.Available()), cost,
+			fmt.Sprint(lot.OnHand), reserved, fmt.Sprint(lot.Available()), cost,
 		})
 	}
 	p.printTable(columns, rows)
