@@ -2,6 +2,7 @@ package picks
 
 import (
 	"fmt"
+	"slices"
 
 	"tickdrawer/inventory"
 	"tickdrawer/inventory/marking"
@@ -35,8 +36,8 @@ func (b *book) variant(plan optimize.Plan, variant optimize.Variant, sheet strin
 		p.paragraph(2, "Warning: "+warning, look{bold: true})
 	}
 	for _, stage := range variant.Stages {
-		p.gap()
 		p.blocks = append(p.blocks, p.row+1)
+		p.gap()
 		p.stage(plan, stage)
 	}
 	p.finish(repeatFrom, repeatTo, 1)
@@ -83,6 +84,9 @@ func (p *page) stage(plan optimize.Plan, stage optimize.StageFit) {
 	columns, found := benchColumns(), readings(fit, spec)
 	p.table(2, columns, benchRows(found, p.row+2))
 	p.paragraph(2, benchNote(circuit), look{italic: true})
+	if slices.ContainsFunc(found, reading.unending) {
+		p.paragraph(2, unendingNote, look{italic: true})
+	}
 	for _, warning := range fit.Warnings {
 		p.paragraph(2, "Warning: "+warning, look{bold: true})
 	}
@@ -211,8 +215,14 @@ func benchRows(found []reading, row int) [][]cell {
 		cells := []cell{{text: r.name, bold: r.stated != nil}, {text: r.unit}, {}, {}, {}, number(show(r.nominal)), {}, {}, {}, {}}
 		if a := r.stated; a != nil {
 			cells[2], cells[3], cells[4] = number(show(a.Target)), boldly(number(show(rounded(a.Min, limitDigits)))), boldly(number(show(rounded(a.Max, limitDigits))))
-			cells[9] = cell{bold: true, formula: fmt.Sprintf(
-				`IF(ISNUMBER(J%[1]d),IF(AND(J%[1]d>=E%[1]d,J%[1]d<=F%[1]d),"pass","fail"),IF(ISBLANK(J%[1]d),"","type a number"))`, row+i)}
+			verdict := fmt.Sprintf(`IF(AND(J%[1]d>=E%[1]d,J%[1]d<=F%[1]d),"pass","fail")`, row+i)
+			if r.percent { // 60 without its sign would be 6000 %
+				verdict = fmt.Sprintf(`IF(J%d>1,"type it with %%",%s)`, row+i, verdict)
+			}
+			cells[9] = cell{bold: true, formula: fmt.Sprintf(`IF(ISNUMBER(J%[1]d),%[2]s,IF(ISBLANK(J%[1]d),"","type a number"))`, row+i, verdict)}
+		}
+		if r.percent {
+			cells[8] = cell{typed: show(0).format()}
 		}
 		if r.worst != nil {
 			cells[6], cells[7] = number(show(r.worst.Min)), number(show(r.worst.Max))

@@ -176,6 +176,37 @@ func TestVerdictFollowsFromTheReading(t *testing.T) {
 	}
 }
 
+func TestDutyIsReadAsAShare(t *testing.T) {
+	file := opened(t, beaconPlan(), testOptions)
+	checked := 0
+	for i, row := range cellsOf(t, file, sheetBoard) {
+		if row[1] != "duty, high" {
+			continue
+		}
+		reading, verdict := fmt.Sprintf("J%d", i+1), fmt.Sprintf("K%d", i+1)
+		// A spreadsheet completes 60 to 60 % where the cell has such a format.
+		id, err := file.GetCellStyle(sheetBoard, reading)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if style, err := file.GetStyle(id); err != nil || style.CustomNumFmt == nil || !strings.HasSuffix(*style.CustomNumFmt, "%") {
+			t.Errorf("the reading's cell has the style %+v, %v", style, err)
+		}
+		for typed, want := range map[float64]string{0.55: "pass", 0.65: "pass", 0.549: "fail", 60: "type it with %"} {
+			if err := file.SetCellValue(sheetBoard, reading, typed); err != nil {
+				t.Fatal(err)
+			}
+			if got, err := file.CalcCellValue(sheetBoard, verdict); err != nil || got != want {
+				t.Errorf("measured %v: %q, %v; want %q", typed, got, err, want)
+			}
+			checked++
+		}
+	}
+	if checked != 4 {
+		t.Errorf("%d readings tried", checked)
+	}
+}
+
 func TestTimingSheetHoldsTheFitsFiguresInSI(t *testing.T) {
 	for name, build := range everyPlan {
 		plan := build()
@@ -262,10 +293,10 @@ func TestStagesStayOnOnePageWhereTheyFit(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	var headings []string // of the stages, by the row before
+	var headings []string // of the stages, by the row before the empty one above
 	for i, row := range cellsOf(t, opened(t, beaconPlan(), testOptions), sheetBoard) {
 		if strings.HasSuffix(row[0], ", NE555") {
-			headings = append(headings, fmt.Sprint(i))
+			headings = append(headings, fmt.Sprint(i-1))
 		}
 	}
 	var breaks []string

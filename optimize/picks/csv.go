@@ -15,8 +15,8 @@ import (
 const byteOrderMark = "\uFEFF"
 
 // PicksCSV returns the picks as CSV by RFC 4180, one line a pick in walking
-// order, under the headings of the workbook's sheet: comma, CRLF, UTF-8 behind
-// a byte order mark, counts as plain digits.
+// order, under the headings of the workbook's sheet but the one of the ticks:
+// comma, CRLF, UTF-8 behind a byte order mark, counts as plain digits.
 //
 // A cell that a spreadsheet would run as a formula (CWE-1236: it begins with
 // = + - @, a tab or a line end, or with a sign after white space) has an
@@ -28,11 +28,11 @@ func PicksCSV(plan optimize.Plan) []byte {
 	w := csv.NewWriter(&out)
 	w.UseCRLF = true
 	// A bytes.Buffer takes every write, so the writer never fails.
-	_ = w.Write(headings)
+	_ = w.Write(headings[1:])
 	count := func(n int64) string { return strconv.FormatInt(n, 10) }
 	for _, l := range lines(plan) {
 		_ = w.Write([]string{
-			"", guarded(l.bin), count(int64(l.lot)), guarded(l.kind), guarded(l.value), guarded(l.tolerance), guarded(l.references),
+			guarded(l.bin), count(int64(l.lot)), guarded(l.kind), guarded(l.value), guarded(l.tolerance), guarded(l.references),
 			count(l.perBoard), count(l.inAll), count(l.leftBin), guarded(l.remark), guarded(l.details),
 		})
 	}

@@ -11,8 +11,8 @@ import (
 	"tickdrawer/optimize"
 )
 
-// headings names the columns of the picks, in both formats. The cells under
-// the first are empty: they are ticked by hand.
+// headings names the columns of the picks. The cells under the first are empty:
+// they are ticked by hand, on paper; a CSV leaves them out.
 var headings = []string{"Picked", "Bin", "Lot", "Kind", "Value", "Tolerance", "References", "Per board", "In all", "Left in bin", "Remark", "Details"}
 
 // line is one pick as the documents write it.

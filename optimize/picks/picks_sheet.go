@@ -6,8 +6,17 @@ import (
 	"tickdrawer/optimize"
 )
 
+// mostLines is how many lines of references a row of the picks shows: a row has
+// at most 409 pt (an Excel limit), and what is more is cut off in print.
+const mostLines = 26
+
 // picks writes the sheet to walk along the bins with.
 func (b *book) picks(plan optimize.Plan) {
+	found := lines(plan)
+	references := 34.0
+	for _, l := range found {
+		references = max(references, textWidth(l.references)/mostLines)
+	}
 	columns := []column{
 		{heading: headings[0], box: true, align: "center"},
 		{heading: headings[1], align: "left", most: 26},
@@ -15,7 +24,7 @@ func (b *book) picks(plan optimize.Plan) {
 		{heading: headings[3], align: "left"},
 		{heading: headings[4], align: "left", most: 26},
 		{heading: headings[5], align: "left"},
-		{heading: headings[6], align: "left", most: 34},
+		{heading: headings[6], align: "left", most: references},
 		{heading: headings[7], align: "right", least: 8.5},
 		{heading: headings[8], align: "right", least: 8.5},
 		{heading: headings[9], align: "right", least: 8.5},
@@ -24,7 +33,7 @@ func (b *book) picks(plan optimize.Plan) {
 	}
 	var rows [][]cell
 	pieces := int64(0)
-	for _, l := range lines(plan) {
+	for _, l := range found {
 		bin := cell{text: l.bin, bold: true}
 		if l.bin == "" {
 			bin = cell{text: "not stated"}

@@ -50,6 +50,15 @@ func readings(fit optimize.Fit, spec optimize.Spec) []reading {
 	return append(asked, others...)
 }
 
+// unending reports whether a figure of the reading is no number.
+func (r reading) unending() bool {
+	finite := figure{number: r.nominal}.finite()
+	if r.worst != nil {
+		finite = finite && figure{number: r.worst.Min}.finite() && figure{number: r.worst.Max}.finite()
+	}
+	return !finite
+}
+
 func oneShot(fit optimize.Fit) bool {
 	if circuit := timer.CircuitBySlug(fit.Circuit); circuit != nil {
 		return circuit.OneShot

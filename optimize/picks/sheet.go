@@ -155,9 +155,10 @@ func (p *page) put(column, span int, c cell, l look) int {
 	default:
 		text := c.shown()
 		if text != "" {
-			p.check(p.file.SetCellStr(p.name, from, escaped(text)))
+			p.check(p.file.SetCellStr(p.name, from, cellText(text)))
 		}
 		l.literal = runs(text)
+		l.format = c.typed
 		if l.wrap {
 			available := -cellMargin / 2
 			for _, w := range p.widths[column-1 : column-1+span] {

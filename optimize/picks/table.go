@@ -6,6 +6,7 @@ import (
 	"regexp"
 	"strings"
 	"unicode"
+	"unicode/utf16"
 	"unicode/utf8"
 )
 
@@ -15,6 +16,7 @@ type cell struct {
 	text    string
 	figure  *figure
 	formula string
+	typed   string // number format of what is typed into an empty cell
 	bold    bool
 	closing bool // in the last row of a group
 }
@@ -44,6 +46,28 @@ func escaped(text string) string {
 	return out.String()
 }
 
+// What a cell holds, in UTF-16 units, and what ends a text that was longer.
+const (
+	mostCellText = 32767
+	cutShort     = "… (cut: longer than a cell holds)"
+)
+
+// cellText returns the text as a cell stores it: escaped, and where it is longer
+// than a cell holds, cut where a reader sees it.
+func cellText(text string) string {
+	stored := escaped(text)
+	if len(stored) <= mostCellText || len(utf16.Encode([]rune(stored))) <= mostCellText {
+		return stored
+	}
+	left := mostCellText - len(utf16.Encode([]rune(cutShort)))
+	for at, r := range stored {
+		if left -= utf16.RuneLen(r); left < 0 {
+			return stored[:at] + cutShort
+		}
+	}
+	return stored
+}
+
 var escapeShape = regexp.MustCompile(`^_x[0-9A-Fa-f]{4}_`)
 
 // count returns a cell with a whole number of pieces.
@@ -59,11 +83,16 @@ func (c cell) shown() string {
 		return printable(c.text)
 	case f.finite():
 		return f.text()
-	case f.number > 0:
-		return "never ends"
 	}
-	return "none"
+	return unending
 }
+
+// unending stands for a figure that is no number. Where it does, unendingNote
+// says why.
+const (
+	unending     = "–"
+	unendingNote = unending + " stands where there is no figure: at that end of the worst case the output may never switch."
+)
 
 // column is a column of a table.
 type column struct {

@@ -28,9 +28,13 @@ func (b *book) timing(plan optimize.Plan) {
 		{heading: "Allowance used, worst case", align: "right"},
 	}
 	var rows [][]cell
+	note := ""
 	for i, variant := range plan.Variants {
 		for _, stage := range variant.Stages {
 			for _, r := range readings(stage.Fit, stageOf(plan, stage.Stage).Spec) {
+				if r.unending() {
+					note = unendingNote
+				}
 				rows = append(rows, timingRow(variantSheet(plan, i), stage, r))
 			}
 			for j := range rows[len(rows)-1] {
@@ -40,6 +44,9 @@ func (b *book) timing(plan optimize.Plan) {
 	}
 	p := b.page(sheetTiming, stretched(fitted(columns, rows)))
 	p.title("Timing: "+oneLine(plan.Job.Name), joined(" · ", "times in s, frequencies in Hz, duty as a share of the period", b.kit(), b.day()))
+	if note != "" {
+		p.paragraph(1, note, look{italic: true})
+	}
 	p.gap()
 	heading := p.table(1, columns, rows)
 	p.finish(heading, heading, heading)

@@ -333,20 +333,6 @@ func TestLotsThatRunOutOrAreHeldAreMarkedInWords(t *testing.T) {
 	}
 }
 
-func TestTimesThatNeverEndAreWords(t *testing.T) {
-	plan := beaconPlan()
-	fit := &plan.Variants[0].Stages[0].Fit
-	fit.WorstCase.Low.Max, fit.WorstCase.Period.Max, fit.WorstCase.Frequency.Min, fit.WorstCase.Duty.Min = math.Inf(1), math.Inf(1), 0, math.NaN()
-	fit.UsedWorst = math.Inf(1)
-	file := opened(t, plan, testOptions)
-	for _, sheet := range []string{sheetBoard, sheetTiming} {
-		cells := fmt.Sprint(cellsOf(t, file, sheet))
-		if !strings.Contains(cells, "never ends") || strings.Contains(cells, "NaN") || strings.Contains(cells, "Inf") {
-			t.Errorf("%s: %s", sheet, cells)
-		}
-	}
-}
-
 func TestAComputedPlanIsWrittenWhole(t *testing.T) {
 	// Two lots of one timer, as the plan draws them; 2 kΩ of two pieces.
 	lots := []inventory.Lot{
