@@ -172,7 +172,7 @@ brings the board closer.
 
 A quantity without an allowance has ±2 %, a duty ±1 point. Status 3: nothing in
 the drawer meets it.`,
-		Example: `  tickdrawer fit --period 4s±2% --duty 50%±1pt --supply 9V±10% --boards 12
+		Example: `  tickdrawer fit --frequency 420Hz±5% --supply 9V±10% --boards 12
   tickdrawer fit --pulse 10s --parts-each 1 --prefer cost`,
 		Args: arguments(),
 		RunE: func(command *cobra.Command, _ []string) error {
@@ -330,8 +330,8 @@ func describeWorst(used float64) string {
 	if finite(used) == nil {
 		return "stops"
 	}
-	if used > 9.99 {
-		return "over 9 times"
+	if used >= 10 {
+		return "over 1000 %"
 	}
 	return marking.FormatPercent(used)
 }

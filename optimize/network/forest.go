@@ -50,6 +50,9 @@ func Grow(pieces []Piece, maxParts int) (*Forest, error) {
 	if maxParts < 1 || maxParts > MaxParts {
 		return nil, fmt.Errorf("a network has 1 to %d parts, not %d", MaxParts, maxParts)
 	}
+	if atLeast := fewestNetworks(len(pieces), maxParts); atLeast > MaxNetworks {
+		return nil, tooMany(len(pieces), maxParts)
+	}
 	f := &Forest{pieces: pieces, start: []int{0, 0}, addition: optimize.Series}
 	for i, piece := range pieces {
 		value := piece.Lot.Value()
@@ -71,11 +74,29 @@ func Grow(pieces []Piece, maxParts int) (*Forest, error) {
 	f.start = append(f.start, len(f.nodes))
 	for n := 2; n <= maxParts; n++ {
 		if !f.join(optimize.Series, n) || !f.join(optimize.Parallel, n) {
-			return nil, inventory.Errorf(inventory.Invalid, "%d lots form more than %d networks of %d parts: allow fewer parts in a position", len(pieces), MaxNetworks, n)
+			return nil, tooMany(len(pieces), n)
 		}
 		f.start = append(f.start, len(f.nodes))
 	}
 	return f, nil
+}
+
+// labelled is how many networks n unlike parts form (OEIS A006351), from n = 0.
+var labelled = [...]float64{0, 1, 2, 8, 52, 472, 5504}
+
+// fewestNetworks returns a number that the networks of so many parts surpass
+// where every lot has a piece: those of unlike parts, each used once.
+func fewestNetworks(lots, parts int) float64 {
+	parts = min(parts, lots, len(labelled)-1)
+	choices := 1.0
+	for i := range parts {
+		choices *= float64(lots-i) / float64(i+1)
+	}
+	return choices * labelled[parts]
+}
+
+func tooMany(lots, parts int) error {
+	return inventory.Errorf(inventory.Invalid, "%d lots form more than %d networks of %d parts: allow fewer parts in a position", lots, MaxNetworks, parts)
 }
 
 // join appends every network of n parts whose outer operator is the given one

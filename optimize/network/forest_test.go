@@ -229,10 +229,15 @@ func checkSpans(t *rapid.T, table *Table, span, from, to int) {
 }
 
 func TestPartsThatNoNetworkTakesAreRefused(t *testing.T) {
+	many := make([]float64, 500)
+	for i := range many {
+		many[i] = float64(i + 1)
+	}
 	mixed := append(resistors(1, 10), Piece{Uses: 1, Lot: inventory.Lot{ID: 9, Part: inventory.Part{Kind: inventory.Capacitor, Value: 1e-6}}})
 	for name, try := range map[string]func() error{
 		"no parts":        func() error { _, err := Grow(resistors(1, 10), 0); return err },
 		"too many parts":  func() error { _, err := Grow(resistors(1, 10), MaxParts+1); return err },
+		"more than fit":   func() error { _, err := Grow(resistors(4, many...), 4); return err },
 		"a link":          func() error { _, err := Grow(resistors(1, 0), 1); return err },
 		"mixed kinds":     func() error { _, err := Grow(mixed, 1); return err },
 		"a negative ohms": func() error { _, err := Grow(resistors(1, -5), 1); return err },
