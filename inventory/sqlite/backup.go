@@ -62,7 +62,20 @@ func (d *Drawer) Backup(ctx context.Context, path string) error {
 	if len(findings) > 0 {
 		return inventory.Errorf(inventory.Invalid, "the drawer %s cannot be backed up, for the copy is not sound: %s; \"tickdrawer verify\" lists all that is wrong", d.path, findings[0])
 	}
-	return nameNew(partial.Name(), path)
+	if err := nameNew(partial.Name(), path); err != nil {
+		return err
+	}
+	syncFolder(filepath.Dir(path))
+	return nil
+}
+
+// syncFolder has the name on the disk too, where the system can: the content is
+// there already.
+func syncFolder(folder string) {
+	if f, err := os.Open(folder); err == nil {
+		f.Sync()
+		f.Close()
+	}
 }
 
 func taken(path string) error {

@@ -231,3 +231,36 @@ func TestCalledOffChangesNothing(t *testing.T) {
 		t.Errorf("the drawer has changed:\n%s", after)
 	}
 }
+
+func TestAnotherProgramsBookingIsWaitedForAndReadBeside(t *testing.T) {
+	ctx := context.Background()
+	d := busyDrawer(t)
+	other := open(t, d.path)
+	tx, err := other.db.Begin() // takes the write lock
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer tx.Rollback()
+	if _, err := d.db.Exec("PRAGMA busy_timeout = 20"); err != nil {
+		t.Fatal(err)
+	}
+	before := contents(t, d) // lots, movements and kits are read at once
+	wantSound(t, d)
+	if err := d.Backup(ctx, filepath.Join(t.TempDir(), "copy")); err != nil {
+		t.Error(err)
+	}
+	_, err = d.Pull(ctx, 1)
+	wantReason(t, err, inventory.Invalid, "another program is booking", "try again", "nothing was changed")
+	if strings.Contains(err.Error(), "locked") {
+		t.Errorf("%v: not a sentence for people", err)
+	}
+	if err := tx.Rollback(); err != nil {
+		t.Fatal(err)
+	}
+	if after := contents(t, d); after != before {
+		t.Errorf("the drawer has changed:\n%s", after)
+	}
+	if _, err := d.Pull(ctx, 1); err != nil {
+		t.Error(err)
+	}
+}

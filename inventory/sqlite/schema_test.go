@@ -36,6 +36,20 @@ func movement(verb, id, kind string, lot, delta, balance int, kit string) string
 		VALUES (%s, '2026-03-14T12:00:00.000000Z', 'x', '%s', %d, %d, %d, %s, zeroblob(32))`, verb, id, kind, lot, delta, balance, kit)
 }
 
+// partWith returns the SQL that adds a part like part 1 with one field changed.
+func partWith(field, value string) string {
+	fields := strings.Split("id key kind value tolerance_minus tolerance_plus part_number rating_v rating_w dielectric tempco_ppm package forward_v saturation_a ideality series_ohm", " ")
+	for i, name := range fields {
+		switch name {
+		case "id", "key":
+			fields[i] = "99"
+		case field:
+			fields[i] = value
+		}
+	}
+	return "INSERT INTO part SELECT " + strings.Join(fields, ", ") + " FROM part WHERE id = 1"
+}
+
 // Each statement goes round the program: the database alone must refuse it, and
 // nothing may have changed.
 func TestDatabaseRefusesByItself(t *testing.T) {
@@ -59,6 +73,7 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 		{"more than a lot may hold", movement("INSERT", "NULL", "count", 1, 1_000_000_000_000, 1_000_000_000_010, "NULL"), "CHECK"},
 		{"a pull for no kit", movement("INSERT", "NULL", "pull", 1, -1, 9, "NULL"), "CHECK"},
 		{"a pull from a lot that the kit does not pick", movement("INSERT", "NULL", "pull", 1, -1, 9, "2"), "no more than its picks"},
+		{"a pull that brings pieces in", movement("INSERT", "NULL", "pull", 2, 1, 4, "2"), "CHECK"},
 		{"a kit pulled twice", movement("INSERT", "NULL", "pull", 2, -3, 0, "2"), "CHECK"},
 		{"a kit pulled twice, passed over", movement("INSERT OR IGNORE", "NULL", "pull", 2, -3, 0, "2"), "no more than its picks"},
 		{"more brought back than is out", movement("INSERT", "NULL", "putback", 2, 3, 6, "2"), "CHECK"},
@@ -85,12 +100,29 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 
 		{"a part changed", "UPDATE part SET value = 4700 WHERE id = 1", "never changed"},
 		{"a part deleted", "DELETE FROM part WHERE id = 1", "FOREIGN KEY"},
-		{"a part of no kind", "INSERT INTO part SELECT 9, 'k', 'coil', value, tolerance_minus, tolerance_plus, part_number, rating_v, rating_w, dielectric, tempco_ppm, package, forward_v, saturation_a, ideality, series_ohm FROM part WHERE id = 1", "CHECK"},
+		{"a part of no kind", partWith("kind", "'coil'"), "CHECK"},
+		{"a part of less than no value", partWith("value", "-1"), "CHECK"},
+		{"a part of endless value", partWith("value", "9e999"), "CHECK"},
+		{"a tolerance of less than nothing", partWith("tolerance_minus", "-0.1"), "CHECK"},
+		{"a tolerance that leaves nothing", partWith("tolerance_minus", "1"), "CHECK"},
+		{"a tolerance of less than nothing upwards", partWith("tolerance_plus", "-0.1"), "CHECK"},
+		{"a tolerance of one side", partWith("tolerance_plus", "NULL"), "CHECK"},
+		{"a rated voltage below zero", partWith("rating_v", "-1"), "CHECK"},
+		{"a rated power below zero", partWith("rating_w", "-1"), "CHECK"},
+		{"a forward voltage below zero", partWith("forward_v", "-1"), "CHECK"},
+		{"a saturation current below zero", partWith("saturation_a", "-1"), "CHECK"},
+		{"an ideality below zero", partWith("ideality", "-1"), "CHECK"},
+		{"a series resistance below zero", partWith("series_ohm", "-1"), "CHECK"},
+		{"a part without a figure", partWith("rating_v", "NULL"), "NOT NULL"},
+		{"a file without its content's sum", "INSERT INTO intake (name, sha256, booked_at, who) VALUES ('x', '', '2026-03-14T12:00:00.000000Z', 'x')", "CHECK"},
+		{"a file booked some day", "INSERT INTO intake (name, sha256, booked_at, who) SELECT 'x', sha256, 'some day', 'x' FROM intake", "CHECK"},
 		{"a booked file changed", "UPDATE intake SET sha256 = 'x' WHERE id = 1", "never changed"},
 		{"a booked file deleted", "DELETE FROM intake WHERE id = 1", "FOREIGN KEY"},
 
 		{"a kit that begins pulled", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 1, 1, 'pulled', '2026-03-14T12:00:00.000000Z', x'')", "begins planned"},
 		{"more boards than are wanted", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 2, 1, 'planned', '2026-03-14T12:00:00.000000Z', x'')", "CHECK"},
+		{"fewer boards than none", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', -1, 1, 'planned', '2026-03-14T12:00:00.000000Z', x'')", "CHECK"},
+		{"a kit planned some day", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 1, 1, 'planned', 'some day', x'')", "CHECK"},
 		{"a kit in no state", "UPDATE kit SET state = 'lost' WHERE id = 3", "from this state to that"},
 		{"a pulled kit planned again", "UPDATE kit SET state = 'planned' WHERE id = 2", "from this state to that"},
 		{"a kit released while it holds pieces", "UPDATE kit SET state = 'released' WHERE id = 1", "holds nothing"},
@@ -101,6 +133,8 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 		{"a pick that begins pulled", "INSERT INTO pick (kit_id, lot_id, quantity, pulled, designators) VALUES (3, 2, 1, 1, '[]')", "nothing pulled"},
 		{"a pick added to a pulled kit", "INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (2, 1, 1, '[]')", "nothing pulled"},
 		{"a pick of nothing", "INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 2, 0, '[]')", "CHECK"},
+		{"references that are no list", "INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 2, 1, 'R1 R2')", "CHECK"},
+		{"nothing held", "UPDATE kit SET state = 'reserved' WHERE id = 3; INSERT INTO reservation VALUES (3, 1, 0)", "CHECK"},
 		{"a reserved pick deleted", "DELETE FROM pick WHERE kit_id = 1", "FOREIGN KEY"},
 		{"a pulled pick deleted", "DELETE FROM pick WHERE kit_id = 2", "FOREIGN KEY"},
 
