@@ -310,12 +310,8 @@ func (p *program) printFitTable(spec optimize.Spec, fits []optimize.Fit) {
 	}
 	var rows [][]string
 	for i, f := range fits {
-		cost := formatCost(f.Cost)
-		if f.CostPartial {
-			cost = "from " + cost
-		}
 		row := []string{
-			fmt.Sprint(i + 1), fmt.Sprint(f.Parts), marking.FormatPercent(f.UsedNominal), describeWorst(f.UsedWorst), cost, f.Circuit, f.Timer,
+			fmt.Sprint(i + 1), fmt.Sprint(f.Parts), marking.FormatPercent(f.UsedNominal), describeWorst(f.UsedWorst), describeCost(f), f.Circuit, f.Timer,
 		}
 		for _, m := range measures {
 			row = append(row, m.Format(f.Nominal.Of(m)))
@@ -323,6 +319,17 @@ func (p *program) printFitTable(spec optimize.Spec, fits []optimize.Fit) {
 		rows = append(rows, row)
 	}
 	p.printTable(columns, rows)
+}
+
+// describeCost returns what the fit's parts cost, as far as it is known.
+func describeCost(f optimize.Fit) string {
+	switch {
+	case !f.CostPartial:
+		return formatCost(f.Cost)
+	case f.Cost == 0:
+		return "not known"
+	}
+	return "from " + formatCost(f.Cost)
 }
 
 // describeWorst returns the share of the allowance that the worst case uses.
