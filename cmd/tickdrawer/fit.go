@@ -34,15 +34,18 @@ type specFlags struct {
 
 func (s *specFlags) add(f *pflag.FlagSet) {
 	s.measures = map[optimize.Measure]*string{}
-	for m, use := range map[optimize.Measure]string{
-		optimize.Frequency: "frequency with its allowance, `HZ` such as 420Hz±2%",
-		optimize.Period:    "period with its allowance, `TIME` such as 4s±3% or 3.9s..4.1s",
-		optimize.Duty:      "high time over period, `SHARE` such as 50%±1pt (points of duty)",
-		optimize.High:      "high time of the output, `TIME`",
-		optimize.Low:       "low time of the output, `TIME`",
-		optimize.Pulse:     "pulse of a one-shot, `TIME`",
+	for _, flag := range []struct {
+		measure optimize.Measure
+		use     string
+	}{
+		{optimize.Frequency, "frequency with its allowance, `HZ` such as 420Hz±2%"},
+		{optimize.Period, "period with its allowance, `TIME` such as 4s±3% or 3.9s..4.1s"},
+		{optimize.Duty, "high time over period, `SHARE` such as 50%±1pt (points of duty)"},
+		{optimize.High, "high time of the output, `TIME`"},
+		{optimize.Low, "low time of the output, `TIME`"},
+		{optimize.Pulse, "pulse of a one-shot, `TIME`"},
 	} {
-		s.measures[m] = f.String(m.String(), "", use)
+		s.measures[flag.measure] = f.String(flag.measure.String(), "", flag.use)
 	}
 	f.StringVar(&s.supply, "supply", allot.DefaultSupply, "supply with its range, `VOLT` such as 9V±10%")
 	f.StringVar(&s.ambient, "ambient", allot.DefaultAmbient, "ambient temperature, `RANGE` such as 10C..40C")

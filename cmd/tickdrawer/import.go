@@ -36,8 +36,8 @@ bin, rating_v, rating_w, dielectric, tempco, package, unit_cost, part_number,
 measured, note, and for diodes forward_v, saturation_a, ideality, series_ohm.
 A column that is not recognised goes into the note; --column names it.`,
 		Example: `  tickdrawer import resistors.csv capacitors.csv
-  tickdrawer import --column "Wert=value" --column "Stck=quantity" liste.csv
-  tickdrawer import --stocktake shelf-a.csv`,
+  tickdrawer import --column "Fach=bin" --column "Bemerkung=note" capacitors.csv
+  tickdrawer import --stocktake odds.csv`,
 		Args: func(_ *cobra.Command, files []string) error {
 			if len(files) == 0 {
 				return usagef("FILE is missing: name a CSV file, or - for standard input")
@@ -232,8 +232,12 @@ func (p *program) printImport(document importDocument, booking sqlite.Booking, f
 	if flags.dryRun {
 		what = "dry run, nothing was changed; would book"
 	}
+	pieces := counted(booking.QuantityBooked, "piece")
+	if flags.stocktake {
+		pieces = fmt.Sprintf("a difference of %+d pieces", booking.QuantityBooked)
+	}
 	p.printf("")
-	p.printf("%s %s into %s", what, counted(booking.QuantityBooked, "piece"), p.drawerPath())
+	p.printf("%s %s into %s", what, pieces, p.drawerPath())
 	p.printf("new lots: %d", booking.LotsCreated)
 	if booking.Movements > 0 && !flags.dryRun {
 		p.printf("movements: %d to %d", booking.First, booking.Last)

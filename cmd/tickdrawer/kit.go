@@ -35,7 +35,7 @@ parts, least cost and closest timing. The plan gets a number, which pull books.
 
 Preference: most complete boards, then fewest parts in all, least cost, least
 allowance used. Status 3: not every board can be built; what is short is named.`,
-		Example: `  tickdrawer kit harbour.yaml --boards 12 -o picks.xlsx
+		Example: `  tickdrawer kit harbour.yaml --boards 6 -o six-boards.xlsx
   tickdrawer kit harbour.yaml --reserve`,
 		Args: arguments("JOB.yaml"),
 		RunE: func(command *cobra.Command, names []string) error {

@@ -44,7 +44,7 @@ func (p *program) putbackCommand() *cobra.Command {
 		Short: "Book pieces of a pulled kit back",
 		Long: `Putback books everything of a pulled kit that is still out back into its lots, or
 some pieces of one lot.`,
-		Example: `  tickdrawer putback 1 --lot 12 --quantity 3`,
+		Example: `  tickdrawer putback 1 --lot 9 --quantity 3`,
 		Args:    arguments("KIT"),
 		RunE: func(command *cobra.Command, args []string) error {
 			given := command.Flags().Changed

@@ -2,6 +2,7 @@ package main
 
 import (
 	"encoding/json"
+	"fmt"
 	"math"
 	"os"
 	"strconv"
@@ -22,6 +23,9 @@ func TestMain(m *testing.M) {
 //
 //	status N tickdrawer ARGS...   run it and require the exit status N
 //	json PATH WANT                look into the JSON document on standard output
+//	cut FILE BYTES                keep so many bytes of the file
+//
+// and the condition [root]: the user may write into every folder.
 //
 // A PATH is names and [indices] joined by dots; "len" at its end is the length. A
 // WANT that is a number matches within 0.1 %, which times of the closed form are
@@ -33,11 +37,19 @@ func TestScripts(t *testing.T) {
 		Setup: func(e *testscript.Env) error {
 			e.Setenv("TICKDRAWER_FILE", e.WorkDir+"/stock.drawer")
 			e.Setenv("XDG_DATA_HOME", e.WorkDir+"/data")
+			e.Setenv("ESCAPE", "\x1b[2J")
 			return nil
 		},
 		Cmds: map[string]func(*testscript.TestScript, bool, []string){
 			"status": scriptStatus,
 			"json":   scriptJSON,
+			"cut":    scriptCut,
+		},
+		Condition: func(condition string) (bool, error) {
+			if condition != "root" {
+				return false, fmt.Errorf("the condition %q is not known", condition)
+			}
+			return os.Geteuid() == 0, nil
 		},
 	})
 }
@@ -72,6 +84,15 @@ func scriptJSON(ts *testscript.TestScript, negated bool, args []string) {
 	if matches := found && matchesJSON(got, args[1]); matches == negated {
 		ts.Fatalf("%s is %v (found: %v), want %s, negated: %v", args[0], got, found, args[1], negated)
 	}
+}
+
+func scriptCut(ts *testscript.TestScript, negated bool, args []string) {
+	if negated || len(args) != 2 {
+		ts.Fatalf("usage: cut FILE BYTES")
+	}
+	size, err := strconv.ParseInt(args[1], 10, 64)
+	ts.Check(err)
+	ts.Check(os.Truncate(ts.MkAbs(args[0]), size))
 }
 
 // lookUp returns what lies at the path: fits[0].nominal.period_s, lots.len.
