@@ -170,7 +170,7 @@ func (p Part) Name() string {
 func (p Part) Key() string {
 	key := []string{string(p.Kind)}
 	number := func(field string, x float64) { key = append(key, field+"="+strconv.FormatFloat(x, 'g', -1, 64)) }
-	text := func(field, written string) { key = append(key, field+"="+strconv.Quote(written)) }
+	text := func(field, written string) { key = append(key, field+"="+strconv.QuoteToASCII(written)) }
 	stated := func(field string, x float64) {
 		if x != 0 {
 			number(field, x)
