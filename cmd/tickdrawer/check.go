@@ -53,7 +53,7 @@ Status 3: the circuit does not run with these parts; the reason is printed.`,
 	f.StringVar(&flags.ambient, "ambient", allot.DefaultAmbient, "ambient temperature, `RANGE` such as 10C..40C")
 	f.StringVar(&flags.load, "load", "", "`CURRENT` that the output delivers, such as 20mA")
 	f.StringVar(&flags.control, "control", "", "`VOLT` that drives the control pin, where something does")
-	f.StringVar(&flags.netlist, "netlist", "", "write a SPICE netlist to the new `FILE`")
+	f.StringVar(&flags.netlist, "netlist", "", "write a SPICE netlist to the `FILE`")
 	f.SortFlags = false
 	return command
 }
@@ -99,7 +99,11 @@ func (p *program) runCheck(ctx context.Context, flags checkFlags, given []string
 		return err
 	}
 	if flags.netlist != "" {
-		if err := writeNew(flags.netlist, []byte(timer.Netlist(c.circuit, &c.conditions, c.placed, c.values.Diode))); err != nil {
+		file, err := newReplacement(flags.netlist)
+		if err != nil {
+			return err
+		}
+		if err := file.finish([]byte(timer.Netlist(c.circuit, &c.conditions, c.placed, c.values.Diode))); err != nil {
 			return err
 		}
 	}

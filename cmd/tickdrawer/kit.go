@@ -47,7 +47,7 @@ allowance used. Status 3: not every board can be built; what is short is named.`
 	}
 	f := command.Flags()
 	f.Int64Var(&flags.boards, "boards", 0, "how many boards, `N` (else what the job says)")
-	f.StringVarP(&flags.output, "output", "o", "", "write the picks to the new `FILE`, .xlsx or .csv")
+	f.StringVarP(&flags.output, "output", "o", "", "write the picks to the `FILE`, .xlsx or .csv")
 	f.BoolVar(&flags.reserve, "reserve", false, "hold the picks for this kit")
 	return command
 }
@@ -185,23 +185,30 @@ func (p *program) runKit(ctx context.Context, name string, flags kitFlags) error
 		return err
 	}
 	document := documentOfPlan(plan)
-	// The file's name is taken before the kit is kept, so that neither stands
-	// without the other; its content names the kit.
+	// The file is opened before the kit is kept, so that neither stands without
+	// the other; its content names the kit.
+	var file *replacement
 	if flags.output != "" {
-		if err := writeNew(flags.output, nil); err != nil {
+		if file, err = newReplacement(flags.output); err != nil {
 			return err
 		}
 		document.Output = flags.output
 	}
 	document.Kit, document.State, err = saveKit(ctx, drawer, plan, document, flags.reserve)
-	if err == nil && flags.output != "" {
-		err = p.writePicks(flags.output, format, plan, document.Kit)
-	}
 	if err != nil {
-		if flags.output != "" {
-			os.Remove(flags.output)
+		if file != nil {
+			file.drop()
 		}
 		return err
+	}
+	if file != nil {
+		content, err := format.Document(plan, picks.Options{Now: p.now(), Kit: document.Kit})
+		if err == nil {
+			err = file.finish(content)
+		}
+		if err != nil {
+			return fmt.Errorf("kit %d is kept, but not its picks: %w", document.Kit, err)
+		}
 	}
 	if p.json {
 		err = p.printJSON(document)
@@ -228,18 +235,6 @@ func readJob(name string) (optimize.Job, error) {
 		return optimize.Job{}, fmt.Errorf("%s: a bom file is not read yet: list its lines under fixed", name)
 	}
 	return parsed.Job, nil
-}
-
-// writePicks fills the output file, which is empty still.
-func (p *program) writePicks(name string, format picks.Format, plan optimize.Plan, kit inventory.KitID) error {
-	content, err := format.Document(plan, picks.Options{Now: p.now(), Kit: kit})
-	if err == nil {
-		err = os.WriteFile(name, content, 0o644)
-	}
-	if err != nil {
-		return fmt.Errorf("kit %d is kept, but %s cannot be written: %w", kit, name, systemReason(err))
-	}
-	return nil
 }
 
 // saveKit keeps the plan in the drawer, and holds its picks where asked.
