@@ -63,6 +63,9 @@ type choice struct {
 // sum; nil fits where there are none. The lists of the stages grow until the
 // best choice is shown to need nothing that they leave out.
 func chooseFits(ctx context.Context, stages []optimize.Stage, lots []inventory.Lot, boards int64) (choice, error) {
+	if !timersSuffice(stages, lots, boards) {
+		return choice{proven: true}, nil
+	}
 	stock := newStock(lots)
 	for length := firstList; ; length *= 4 {
 		lists, err := listFits(ctx, stages, lots, boards, length)

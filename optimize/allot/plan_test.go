@@ -118,6 +118,34 @@ func TestTimersOfOneFamilyAreDrawnFromSeveralLots(t *testing.T) {
 	}
 }
 
+func TestTimersThatDoNotDivideOverTheStagesLimitTheBoards(t *testing.T) {
+	lots := []inventory.Lot{
+		resistorLot(1, 10e3, 0.01, 200), capacitorLot(2, 1e-6, 200),
+		timerLot(3, "NE555P", 35), timerLot(4, "TLC555CP", 24),
+	}
+	var stages []optimize.Stage
+	for i := range 4 {
+		stage := pulseStage(fmt.Sprint("stage", i), 10e3, 1e-6, 0.2, 1)
+		stage.Spec.Timers = nil
+		stages = append(stages, stage)
+	}
+	// 13 boards: 35/13 serve two stages, 24/13 one, and there are four.
+	plan := planned(t, optimize.Job{Name: "timers", Boards: 50, Stages: stages}, lots)
+	if plan.Built != 12 || !plan.Search.Proven {
+		t.Errorf("built %d, proven %v: want 12, proven", plan.Built, plan.Search.Proven)
+	}
+	// Whom only one family suits comes first; the other moves to the second.
+	stages[3].Spec.Timers = []string{"NE555"}
+	stages[2].Spec.Timers = []string{"NE555"}
+	if plan = planned(t, optimize.Job{Name: "timers", Boards: 12, Stages: stages}, lots); plan.Built != 12 {
+		t.Errorf("built %d of 12", plan.Built)
+	}
+	stages[1].Spec.Timers = []string{"NE555"}
+	if plan = planned(t, optimize.Job{Name: "timers", Boards: 12, Stages: stages}, lots); plan.Built != 11 {
+		t.Errorf("built %d, want 11: 35 serve three stages", plan.Built)
+	}
+}
+
 // The peer tries every choice of fits, one a stage, for every number of boards.
 func TestPlanEqualsEveryChoiceTried(t *testing.T) {
 	built := 0

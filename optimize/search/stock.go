@@ -38,7 +38,7 @@ type devicePool struct {
 // devicePools returns the timers to try, sorted by name, whether none is
 // stocked, and what had to be left out.
 func devicePools(spec optimize.Spec, lots []inventory.Lot) (pools []devicePool, unstocked bool, out []optimize.Unsuited, err error) {
-	stocked := timerPools(lots)
+	stocked := TimerPools(lots)
 	for _, lot := range lots {
 		if _, known := timer.DeviceForPart(lot.Part.PartNumber); lot.Part.Kind == inventory.Timer && !known && len(spec.Timers) == 0 {
 			out = append(out, optimize.Unsuited{Timer: lot.Part.PartNumber, Why: "no data sheet figures are known for this timer"})
@@ -113,7 +113,8 @@ func inverterPools(lots []inventory.Lot) []optimize.Pool {
 	})
 }
 
-func timerPools(lots []inventory.Lot) []optimize.Pool {
+// TimerPools returns the timers in stock by family, sorted by the family's name.
+func TimerPools(lots []inventory.Lot) []optimize.Pool {
 	return optimize.Pools(lots, func(lot inventory.Lot) string {
 		if lot.Part.Kind != inventory.Timer {
 			return ""
@@ -129,5 +130,5 @@ func timerPools(lots []inventory.Lot) []optimize.Pool {
 // Pools returns the lots that serve alike, timers of a family, diodes and
 // inverters of a part: a fit takes any lot of a pool and names the first.
 func Pools(lots []inventory.Lot) []optimize.Pool {
-	return slices.Concat(timerPools(lots), diodePools(lots), inverterPools(lots))
+	return slices.Concat(TimerPools(lots), diodePools(lots), inverterPools(lots))
 }
