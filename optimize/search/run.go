@@ -81,10 +81,10 @@ func prepare(spec optimize.Spec, lots []inventory.Lot) (*stage, optimize.Front, 
 		return nil, front, err
 	}
 	resistors := pieces(lots, inventory.Resistor, spec.Boards)
-	if s.resistors, err = tables(resistors, spec.PartsEach, spec.Basis); err != nil {
+	if s.resistors, err = tables(resistors, spec.PartsEach, spec.Basis, resistorTables); err != nil {
 		return nil, front, err
 	}
-	if s.capacitors, err = tables(pieces(lots, inventory.Capacitor, spec.Boards), spec.PartsC, spec.Basis); err != nil {
+	if s.capacitors, err = tables(pieces(lots, inventory.Capacitor, spec.Boards), spec.PartsC, spec.Basis, capacitorTables); err != nil {
 		return nil, front, err
 	}
 	for _, piece := range resistors {
@@ -102,14 +102,18 @@ func prepare(spec optimize.Spec, lots []inventory.Lot) (*stage, optimize.Front, 
 	return s, front, s.useBasis()
 }
 
-// costTables is into how many tables of ascending cost the networks of one number
-// of parts are split, so that a cheap class of networks is not searched for what
-// only a dear one could bring.
-const costTables = 6
+// Into how many tables of ascending cost the networks of one number of parts are
+// split, so that cheap ones are not searched for what only dear ones could bring.
+// What is computed for a pair of resistors serves every capacitor of a table, so
+// theirs are not split: their costs are looked at row by row.
+const (
+	resistorTables  = 4
+	capacitorTables = 1
+)
 
 // tables returns the networks, each table of one number of parts and of some
 // costs; none is empty.
-func tables(pieces []network.Piece, most int, basis optimize.Basis) ([]*network.Table, error) {
+func tables(pieces []network.Piece, most int, basis optimize.Basis, mostTables int) ([]*network.Table, error) {
 	forest, err := network.Grow(pieces, most)
 	if err != nil {
 		return nil, err
@@ -120,7 +124,7 @@ func tables(pieces []network.Piece, most int, basis optimize.Basis) ([]*network.
 		if basis != optimize.Nominal { // equal values may spread unequally
 			table = forest.Structures
 		}
-		found = append(found, table(n).ByCost(costTables)...)
+		found = append(found, table(n).ByCost(mostTables)...)
 	}
 	return found, nil
 }
