@@ -262,7 +262,7 @@ func (p *program) printFront(spec optimize.Spec, front optimize.Front, listed []
 		if front.Search.Proven {
 			p.printf("nothing in the drawer meets it: widen an allowance, or allow more parts with --parts-each")
 		} else {
-			p.printf("nothing was found in the time given")
+			p.printf("nothing was found before the search was stopped")
 		}
 		return
 	}

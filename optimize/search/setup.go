@@ -7,6 +7,7 @@ import (
 	"strings"
 
 	"tickdrawer/inventory"
+	"tickdrawer/inventory/marking"
 	"tickdrawer/optimize"
 	"tickdrawer/optimize/timer"
 )
@@ -31,6 +32,9 @@ func (s *stage) findSetups(lots []inventory.Lot) (out []optimize.Unsuited, timer
 					err = endErr
 				}
 			}
+			if err == nil {
+				err = fastEnough(device.device, s.spec)
+			}
 			if err != nil {
 				out = append(out, optimize.Unsuited{Circuit: circuit.Slug, Timer: device.device.Name, Why: err.Error()})
 				continue
@@ -53,6 +57,17 @@ func (s *stage) findSetups(lots []inventory.Lot) (out []optimize.Unsuited, timer
 		}
 	}
 	return out, timersUnstocked, nil
+}
+
+// fastEnough returns an error where all that the spec allows is above the highest
+// frequency of the device, so that no network need be looked at.
+func fastEnough(device *timer.Device, spec optimize.Spec) error {
+	of := windowsAt(&spec, 1)
+	slowest := 1 / min(of.period.high, of.high.high+of.low.high)
+	if most := device.FrequencyMaxHz; most > 0 && !spec.OneShot() && slowest > most*(1+outward) {
+		return fmt.Errorf("%s works up to %s, and at least %s is asked for", device.Name, marking.FormatHertz(most), marking.FormatHertz(slowest))
+	}
+	return nil
 }
 
 // circuitsFor returns the circuits that the spec names, or all of its kind.

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 
+	"tickdrawer/optimize"
 	"tickdrawer/optimize/timer"
 )
 
@@ -12,6 +13,12 @@ func (e *Evaluator) figures() timer.TimingError {
 		return e.around.Device.OneShot
 	}
 	return e.around.Device.Astable
+}
+
+// TimeScale returns what the timer's own errors multiply every time by, at their
+// least and at their largest, beside 1.
+func (e *Evaluator) TimeScale() optimize.Band {
+	return optimize.Band{Min: e.scaleMin, Max: e.scaleMax}
 }
 
 // largestTimingError returns that at whichever end of the supply range is further
