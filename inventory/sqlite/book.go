@@ -73,7 +73,8 @@ func (d *Drawer) Book(ctx context.Context, intake Intake) (Booking, error) {
 // intakeWriter books receipts with prepared statements, which close with their
 // transaction.
 type intakeWriter struct {
-	ctx     context.Context
+	ctx     context.Context // calls off between rows
+	row     context.Context // cannot be called off: else the driver spends a goroutine on every statement
 	tx      *sql.Tx
 	ledger  *ledger
 	booking Booking
@@ -109,7 +110,7 @@ type count struct {
 }
 
 func newIntakeWriter(ctx context.Context, tx *sql.Tx, d *Drawer) (*intakeWriter, error) {
-	w := &intakeWriter{ctx: ctx, tx: tx, parts: map[string]int64{}, counted: map[inventory.LotID]*count{}}
+	w := &intakeWriter{ctx: ctx, row: context.WithoutCancel(ctx), tx: tx, parts: map[string]int64{}, counted: map[inventory.LotID]*count{}}
 	for _, statement := range []struct {
 		into **sql.Stmt
 		text string
@@ -127,7 +128,7 @@ func newIntakeWriter(ctx context.Context, tx *sql.Tx, d *Drawer) (*intakeWriter,
 		*statement.into = prepared
 	}
 	var err error
-	w.ledger, err = openLedger(ctx, tx, d)
+	w.ledger, err = openLedger(w.row, tx, d)
 	return w, err
 }
 
@@ -145,6 +146,9 @@ func (w *intakeWriter) intake(intake Intake) error {
 			return err
 		}
 		for _, receipt := range file.Receipts {
+			if err := w.ctx.Err(); err != nil {
+				return err
+			}
 			if err := w.receipt(receipt, from, intake.Stocktake); err != nil {
 				if inventory.ReasonOf(err) != 0 {
 					return err
@@ -244,7 +248,7 @@ func (w *intakeWriter) lot(receipt inventory.Receipt) (stored, bool, error) {
 	lot := stored{part: receipt.Part.Key()}
 	part, known := w.parts[lot.part]
 	if !known {
-		err := w.findPart.QueryRowContext(w.ctx, lot.part).Scan(&part)
+		err := w.findPart.QueryRowContext(w.row, lot.part).Scan(&part)
 		if errors.Is(err, sql.ErrNoRows) {
 			return lot, false, nil
 		}
@@ -253,7 +257,7 @@ func (w *intakeWriter) lot(receipt inventory.Receipt) (stored, bool, error) {
 		}
 		w.parts[lot.part] = part
 	}
-	err := w.find.QueryRowContext(w.ctx, part, receipt.Bin, receipt.Measured).Scan(&lot.id, &lot.onHand, &lot.reserved, &lot.cost, &lot.note)
+	err := w.find.QueryRowContext(w.row, part, receipt.Bin, receipt.Measured).Scan(&lot.id, &lot.onHand, &lot.reserved, &lot.cost, &lot.note)
 	if errors.Is(err, sql.ErrNoRows) {
 		return lot, false, nil
 	}
@@ -265,7 +269,7 @@ func (w *intakeWriter) lot(receipt inventory.Receipt) (stored, bool, error) {
 		cost = sql.NullInt64{Int64: int64(*receipt.UnitCost), Valid: true}
 	}
 	if cost != lot.cost || note != lot.note {
-		_, err = w.describe.ExecContext(w.ctx, cost, note, lot.id)
+		_, err = w.describe.ExecContext(w.row, cost, note, lot.id)
 	}
 	return lot, true, err
 }
@@ -286,7 +290,7 @@ func (w *intakeWriter) begin(receipt inventory.Receipt) (stored, error) {
 	lot := stored{part: receipt.Part.Key()}
 	part, known := w.parts[lot.part]
 	if !known {
-		result, err := w.addPart.ExecContext(w.ctx, partValues(receipt.Part)...)
+		result, err := w.addPart.ExecContext(w.row, partValues(receipt.Part)...)
 		if err != nil {
 			return lot, err
 		}
@@ -299,7 +303,7 @@ func (w *intakeWriter) begin(receipt inventory.Receipt) (stored, error) {
 	if receipt.UnitCost != nil {
 		cost = sql.NullInt64{Int64: int64(*receipt.UnitCost), Valid: true}
 	}
-	result, err := w.create.ExecContext(w.ctx, part, receipt.Bin, receipt.Measured, cost, receipt.Note)
+	result, err := w.create.ExecContext(w.row, part, receipt.Bin, receipt.Measured, cost, receipt.Note)
 	if err != nil {
 		return lot, err
 	}

@@ -22,6 +22,9 @@ func (d *Drawer) within(ctx context.Context, doing string, book func(tx *sql.Tx)
 	}
 	defer tx.Rollback() // after a commit it does nothing
 	if err := book(tx); err != nil {
+		if ctx.Err() != nil {
+			return ctx.Err() // not what the statement says that found its transaction gone
+		}
 		return d.explain(doing, err)
 	}
 	return d.explain(doing, tx.Commit())
