@@ -82,17 +82,23 @@ func (t *Table) ByCost(most int) []*Table {
 		for to < len(ascending) && ascending[to] == ascending[to-1] {
 			to++
 		}
-		part := &Table{Parts: t.Parts, forest: t.forest}
-		for row, number := range t.numbers {
-			if t.Costs[row] >= ascending[from] && t.Costs[row] <= ascending[to-1] {
-				part.numbers = append(part.numbers, number)
-			}
-		}
-		part.fill()
-		parts = append(parts, part)
+		least, most := ascending[from], ascending[to-1]
+		parts = append(parts, t.Only(func(row int) bool { return t.Costs[row] >= least && t.Costs[row] <= most }))
 		from = to
 	}
 	return parts
+}
+
+// Only returns the rows that keep tells, sorted as the whole is.
+func (t *Table) Only(keep func(row int) bool) *Table {
+	some := &Table{Parts: t.Parts, forest: t.forest}
+	for row, number := range t.numbers {
+		if keep(row) {
+			some.numbers = append(some.numbers, number)
+		}
+	}
+	some.fill()
+	return some
 }
 
 // Number returns the number of the row's network in its forest: fewer parts

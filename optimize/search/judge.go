@@ -41,8 +41,35 @@ func (s *stage) useBasis() error {
 	}
 	if s.spec.Basis == optimize.WorstCase {
 		s.judge = func(c *candidate) float64 { return s.spec.WorstAllowanceUsed(s.worstCase(c)) }
+		s.dropTooWide()
 	}
 	return nil
+}
+
+// dropTooWide leaves out what can never hold in the worst case: a timer whose own
+// errors, or a capacitor whose spread, multiplies every time by more than some
+// window is wide.
+func (s *stage) dropTooWide() {
+	s.setups = slices.DeleteFunc(s.setups, func(setup setup) bool {
+		return tooWide(&s.spec, setup.circuit.OneShot, setup.evaluator.TimeScale())
+	})
+	oneShot := s.spec.OneShot()
+	for i, table := range s.capacitors {
+		s.capacitors[i] = table.Only(func(row int) bool {
+			tree := table.Network(row)
+			return !tooWide(&s.spec, oneShot, spread.NetworkBand(&tree, s.spec.Ambient))
+		})
+	}
+	s.capacitors = slices.DeleteFunc(s.capacitors, func(t *network.Table) bool { return t.Len() == 0 })
+}
+
+// tooWide reports whether a factor of every time spreads over more than some
+// window of the spec.
+func tooWide(spec *optimize.Spec, oneShot bool, factor optimize.Band) bool {
+	of := windowsAt(spec, 1)
+	least, most := factor.Min, factor.Max*(1-outward)
+	return most*of.high.low > least*of.high.high ||
+		!oneShot && (most*of.low.low > least*of.low.high || most*of.period.low > least*of.period.high)
 }
 
 // drift returns by how much, relative, the worst case of a fit may lie beside

@@ -145,9 +145,6 @@ func (w *walk) overFarads(bounds *phaseBounds, cost inventory.Micros, from, to i
 		}
 		w.low.Farads, w.high.Farads = w.farads.Values[row], w.farads.Values[row]
 		w.at.farad.row = int32(row)
-		if w.judge != nil && w.tooWide(limit) {
-			continue
-		}
 		if len(w.order) == 1 {
 			w.leaf(with)
 			continue
@@ -161,17 +158,6 @@ func (w *walk) overFarads(bounds *phaseBounds, cost inventory.Micros, from, to i
 			w.overRows(1, with)
 		}
 	}
-}
-
-// tooWide reports whether the capacitor at hand and the timer's own errors alone
-// spread every time, all of which they multiply, over more than a window.
-func (w *walk) tooWide(limit float64) bool {
-	farads := w.faradBands.of(w.capacitors, w.at.farad, w.spec.Ambient)
-	scale := w.evaluator.TimeScale()
-	least, most := farads.Min*scale.Min, farads.Max*scale.Max*(1-outward)
-	of := w.windowsOf(limit)
-	return most*of.high.low > least*of.high.high ||
-		!w.circuit.OneShot && (most*of.low.low > least*of.low.high || most*of.period.low > least*of.period.high)
 }
 
 // overRows searches all rows of the resistor at the depth; the cost is the least.
