@@ -4,14 +4,11 @@ import (
 	"bytes"
 	"context"
 	"database/sql"
-	"errors"
 	"os"
 	"path/filepath"
 	"strings"
 	"sync"
-	"sync/atomic"
 	"testing"
-	"time"
 
 	"tickdrawer/inventory"
 )
@@ -214,72 +211,6 @@ func TestDrawerIsMadeByManyAtOnce(t *testing.T) {
 	}
 	group.Wait()
 	wantSound(t, open(t, path))
-}
-
-func TestCalledOffChangesNothing(t *testing.T) {
-	d := stocked(t, 10)
-	before := contents(t, d)
-	ctx, cancel := context.WithCancel(context.Background())
-	cancel()
-	if _, err := d.Book(ctx, Intake{Files: []IntakeFile{file("x.csv", inventory.Receipt{Part: ohms(t, 1), Quantity: 1})}}); err == nil {
-		t.Error("booked though it was called off")
-	}
-	if _, err := d.Kit(ctx, 1); err == nil {
-		t.Error("read though it was called off")
-	}
-	if err := d.Backup(ctx, filepath.Join(t.TempDir(), "copy")); err == nil {
-		t.Error("backed up though it was called off")
-	}
-	if after := contents(t, d); after != before {
-		t.Errorf("the drawer has changed:\n%s", after)
-	}
-}
-
-// calledOff is a context that is called off when it is asked a number of
-// times whether it is.
-type calledOff struct {
-	context.Context
-	looks atomic.Int64
-	stop  context.CancelFunc
-}
-
-func (c *calledOff) Err() error {
-	if c.looks.Add(-1) == 0 {
-		c.stop()
-	}
-	return c.Context.Err()
-}
-
-// A booking that is called off between any two rows, or within one.
-func TestCalledOffMidwayChangesNothing(t *testing.T) {
-	d := stocked(t, 10)
-	var receipts []inventory.Receipt
-	for i := range 200 {
-		receipts = append(receipts, inventory.Receipt{Part: ohms(t, float64(i)), Bin: "B", Quantity: 1})
-	}
-	before := contents(t, d)
-	for looks := int64(1); looks < 150; looks += 7 {
-		ctx, cancel := context.WithCancel(context.Background())
-		off := &calledOff{Context: ctx, stop: cancel}
-		off.looks.Store(looks)
-		_, err := d.Book(off, Intake{Files: []IntakeFile{file("x.csv", receipts...)}})
-		if !errors.Is(err, context.Canceled) {
-			t.Fatalf("called off at look %d: %v", looks, err)
-		}
-		if after := contents(t, d); after != before {
-			t.Fatalf("called off at look %d, the drawer has changed:\n%s", looks, after)
-		}
-	}
-	for after := time.Duration(0); after < 3*time.Millisecond; after += 300 * time.Microsecond {
-		ctx, cancel := context.WithTimeout(context.Background(), after)
-		_, err := d.Book(ctx, Intake{DryRun: true, Files: []IntakeFile{file("x.csv", receipts...)}})
-		if err != nil && !errors.Is(err, context.DeadlineExceeded) {
-			t.Errorf("out of time after %v: %v", after, err)
-		}
-		cancel()
-	}
-	wantSound(t, d)
-	book(t, d, Intake{Files: []IntakeFile{file("x.csv", receipts...)}})
 }
 
 func TestAnotherProgramsBookingIsWaitedForAndReadBeside(t *testing.T) {

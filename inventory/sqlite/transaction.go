@@ -21,13 +21,13 @@ func (d *Drawer) within(ctx context.Context, doing string, book func(tx *sql.Tx)
 		return d.explain(doing, err)
 	}
 	defer tx.Rollback() // after a commit it does nothing
-	if err := book(tx); err != nil {
-		if ctx.Err() != nil {
-			return ctx.Err() // not what the statement says that found its transaction gone
-		}
-		return d.explain(doing, err)
+	if err = book(tx); err == nil {
+		err = tx.Commit()
 	}
-	return d.explain(doing, tx.Commit())
+	if err != nil && ctx.Err() != nil {
+		return ctx.Err() // not what a statement says that found its transaction gone
+	}
+	return d.explain(doing, err)
 }
 
 // reading runs queries that all see the drawer as it is at the first of them.
