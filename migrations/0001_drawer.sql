@@ -3,14 +3,15 @@
 --   0 <= reserved <= on hand, in every lot, after every statement;
 --   on hand is the balance of the lot's last movement, and moves by movements alone;
 --   reserved is the sum of the open reservations, and moves by them alone;
---   movements are added at the end, never changed, deleted or replaced;
+--   movements are added at the end, never changed, deleted or replaced, and neither
+--   is what they speak of;
 --   a kit takes out no more than its picks, and brings back no more than it took.
 
 -- +goose Up
 PRAGMA application_id = 1952739955; -- "tdrs": tells a drawer from other SQLite files
 
 CREATE TABLE part (
-    id              INTEGER PRIMARY KEY,
+    id              INTEGER PRIMARY KEY CHECK (id > 0), -- here and below: in a trigger before INSERT an id to come is -1
     key             TEXT NOT NULL UNIQUE, -- equal exactly when two parts are the same part
     kind            TEXT NOT NULL CHECK (kind IN ('resistor', 'capacitor', 'diode', 'timer', 'inverter', 'potentiometer', 'other')),
     value           REAL NOT NULL CHECK (value >= 0 AND value < 1e300), -- ohm or farad by kind; 0 for kinds without a value
@@ -30,7 +31,7 @@ CREATE TABLE part (
 ) STRICT;
 
 CREATE TABLE lot (
-    id               INTEGER PRIMARY KEY AUTOINCREMENT, -- a number is never given out twice
+    id               INTEGER PRIMARY KEY AUTOINCREMENT CHECK (id > 0), -- a number is never given out twice
     part_id          INTEGER NOT NULL REFERENCES part (id),
     bin              TEXT NOT NULL,
     measured         REAL NOT NULL CHECK (measured >= 0 AND measured < 1e300), -- in the part's unit; 0 where not measured
@@ -45,7 +46,7 @@ CREATE TABLE lot (
 -- A file that was booked. Times are UTC as RFC 3339 with six decimals, so that
 -- their order is the order of the texts.
 CREATE TABLE intake (
-    id        INTEGER PRIMARY KEY AUTOINCREMENT,
+    id        INTEGER PRIMARY KEY AUTOINCREMENT CHECK (id > 0),
     name      TEXT NOT NULL,
     sha256    TEXT NOT NULL CHECK (length(sha256) = 64), -- of the content, hexadecimal
     booked_at TEXT NOT NULL CHECK (booked_at GLOB '????-??-??T??:??:??.??????Z'),
@@ -58,7 +59,7 @@ CREATE TABLE kit_state (state TEXT PRIMARY KEY) STRICT, WITHOUT ROWID;
 INSERT INTO kit_state VALUES ('planned'), ('reserved'), ('pulled'), ('released');
 
 CREATE TABLE kit (
-    id         INTEGER PRIMARY KEY AUTOINCREMENT,
+    id         INTEGER PRIMARY KEY AUTOINCREMENT CHECK (id > 0),
     job        TEXT NOT NULL,
     boards     INTEGER NOT NULL CHECK (boards >= 0),
     wanted     INTEGER NOT NULL CHECK (wanted >= boards),
@@ -108,10 +109,36 @@ CREATE TABLE movement (
 CREATE INDEX movement_by_lot ON movement (lot_id, id);
 CREATE INDEX movement_by_kit ON movement (kit_id, lot_id) WHERE kit_id IS NOT NULL;
 
+-- REPLACE fires the triggers on DELETE only where recursive_triggers is on, and
+-- foreign keys hold only where foreign_keys is: SQLite's own shell has both off.
+-- The triggers named ..._is_not_replaced and ..._is_not_deleted hold in any case.
+-- +goose StatementBegin
+CREATE TRIGGER part_is_not_replaced BEFORE INSERT ON part
+WHEN EXISTS (SELECT 1 FROM part WHERE id = NEW.id OR key = NEW.key)
+BEGIN
+    SELECT RAISE(ABORT, 'parts are never replaced: this one is there already');
+END;
+-- +goose StatementEnd
+
 -- +goose StatementBegin
 CREATE TRIGGER part_is_not_changed BEFORE UPDATE ON part
 BEGIN
     SELECT RAISE(ABORT, 'a part is never changed: the ledger speaks of it');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
+CREATE TRIGGER part_is_not_deleted BEFORE DELETE ON part
+BEGIN
+    SELECT RAISE(ABORT, 'parts are never deleted: the ledger speaks of them');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
+CREATE TRIGGER lot_is_not_replaced BEFORE INSERT ON lot
+WHEN EXISTS (SELECT 1 FROM lot WHERE id = NEW.id OR (part_id, bin, measured) = (NEW.part_id, NEW.bin, NEW.measured))
+BEGIN
+    SELECT RAISE(ABORT, 'lots are never replaced: this one is there already');
 END;
 -- +goose StatementEnd
 
@@ -128,6 +155,14 @@ CREATE TRIGGER lot_keeps_its_part BEFORE UPDATE OF id, part_id ON lot
 WHEN NEW.id IS NOT OLD.id OR NEW.part_id IS NOT OLD.part_id
 BEGIN
     SELECT RAISE(ABORT, 'a lot keeps its number and part: the ledger speaks of it');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
+CREATE TRIGGER lot_is_not_moved_over_another BEFORE UPDATE OF bin, measured ON lot
+WHEN EXISTS (SELECT 1 FROM lot WHERE (part_id, bin, measured) = (NEW.part_id, NEW.bin, NEW.measured) AND id <> NEW.id)
+BEGIN
+    SELECT RAISE(ABORT, 'lots are never replaced: one of the part lies there already');
 END;
 -- +goose StatementEnd
 
@@ -155,14 +190,27 @@ END;
 -- +goose StatementEnd
 
 -- +goose StatementBegin
+CREATE TRIGGER intake_is_not_replaced BEFORE INSERT ON intake
+WHEN EXISTS (SELECT 1 FROM intake WHERE id = NEW.id)
+BEGIN
+    SELECT RAISE(ABORT, 'booked files are never replaced: the ledger speaks of them');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
 CREATE TRIGGER intake_is_not_changed BEFORE UPDATE ON intake
 BEGIN
     SELECT RAISE(ABORT, 'a booked file is never changed: the ledger speaks of it');
 END;
 -- +goose StatementEnd
 
--- REPLACE deletes by the triggers below only where recursive_triggers is on; this
--- holds in any case.
+-- +goose StatementBegin
+CREATE TRIGGER intake_is_not_deleted BEFORE DELETE ON intake
+BEGIN
+    SELECT RAISE(ABORT, 'booked files are never deleted: the ledger speaks of them');
+END;
+-- +goose StatementEnd
+
 -- +goose StatementBegin
 CREATE TRIGGER movement_is_not_replaced BEFORE INSERT ON movement
 WHEN EXISTS (SELECT 1 FROM movement WHERE id = NEW.id)
@@ -226,6 +274,29 @@ END;
 -- +goose StatementEnd
 
 -- +goose StatementBegin
+CREATE TRIGGER kit_is_not_replaced BEFORE INSERT ON kit
+WHEN EXISTS (SELECT 1 FROM kit WHERE id = NEW.id)
+BEGIN
+    SELECT RAISE(ABORT, 'kits are never replaced: this one is there already');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
+CREATE TRIGGER kit_keeps_its_number BEFORE UPDATE OF id ON kit
+WHEN NEW.id IS NOT OLD.id
+BEGIN
+    SELECT RAISE(ABORT, 'a kit keeps its number: the ledger speaks of it');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
+CREATE TRIGGER kit_is_not_deleted BEFORE DELETE ON kit
+BEGIN
+    SELECT RAISE(ABORT, 'kits are never deleted: release one instead');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
 CREATE TRIGGER kit_begins_planned BEFORE INSERT ON kit
 WHEN NEW.state <> 'planned'
 BEGIN
@@ -245,6 +316,21 @@ BEGIN
     WHERE NEW.state <> 'reserved' AND EXISTS (SELECT 1 FROM reservation WHERE kit_id = NEW.id);
     SELECT RAISE(ABORT, 'a pulled kit took all its picks')
     WHERE NEW.state = 'pulled' AND EXISTS (SELECT 1 FROM pick WHERE kit_id = NEW.id AND pulled < quantity);
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
+CREATE TRIGGER pick_is_not_replaced BEFORE INSERT ON pick
+WHEN EXISTS (SELECT 1 FROM pick WHERE kit_id = NEW.kit_id AND lot_id = NEW.lot_id)
+BEGIN
+    SELECT RAISE(ABORT, 'picks are never replaced: the kit has one from this lot');
+END;
+-- +goose StatementEnd
+
+-- +goose StatementBegin
+CREATE TRIGGER pick_is_not_deleted BEFORE DELETE ON pick
+BEGIN
+    SELECT RAISE(ABORT, 'picks are never deleted: the kit was planned with them');
 END;
 -- +goose StatementEnd
 

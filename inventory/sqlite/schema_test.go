@@ -87,8 +87,8 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 		{"pieces freed without their kit", "UPDATE lot SET reserved = 0 WHERE id = 1", "reservations alone"},
 		{"a lot that begins with pieces", "INSERT INTO lot (part_id, bin, measured, note, on_hand) VALUES (1, 'Z', 0, '', 5)", "begins empty"},
 		{"a lot that begins reserved", "INSERT INTO lot (part_id, bin, measured, note, reserved) VALUES (1, 'Z', 0, '', 5)", "begins empty"},
-		{"a lot of the same part in the same bin", "INSERT INTO lot (part_id, bin, measured, note) SELECT part_id, bin, measured, '' FROM lot", "UNIQUE"},
-		{"a lot replaced", "INSERT OR REPLACE INTO lot (id, part_id, bin, measured, note) VALUES (1, 1, 'Z', 0, '')", "never deleted"},
+		{"a lot of the same part in the same bin", "INSERT INTO lot (part_id, bin, measured, note) SELECT part_id, bin, measured, '' FROM lot", "never replaced"},
+		{"a lot replaced", "INSERT OR REPLACE INTO lot (id, part_id, bin, measured, note) VALUES (1, 1, 'Z', 0, '')", "never replaced"},
 		{"a lot deleted", "DELETE FROM lot WHERE id = 1", "never deleted"},
 		{"a lot given another part", "UPDATE lot SET part_id = 2 WHERE id = 1", "keeps its number and part"},
 		{"a lot given another number", "UPDATE lot SET id = 9 WHERE id = 1", "keeps its number and part"},
@@ -99,7 +99,7 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 		{"a cost below zero", "UPDATE lot SET unit_cost_micros = -1 WHERE id = 1", "CHECK"},
 
 		{"a part changed", "UPDATE part SET value = 4700 WHERE id = 1", "never changed"},
-		{"a part deleted", "DELETE FROM part WHERE id = 1", "FOREIGN KEY"},
+		{"a part deleted", "DELETE FROM part WHERE id = 1", "never deleted"},
 		{"a part of no kind", partWith("kind", "'coil'"), "CHECK"},
 		{"a part of less than no value", partWith("value", "-1"), "CHECK"},
 		{"a part of endless value", partWith("value", "9e999"), "CHECK"},
@@ -117,12 +117,14 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 		{"a file without its content's sum", "INSERT INTO intake (name, sha256, booked_at, who) VALUES ('x', '', '2026-03-14T12:00:00.000000Z', 'x')", "CHECK"},
 		{"a file booked some day", "INSERT INTO intake (name, sha256, booked_at, who) SELECT 'x', sha256, 'some day', 'x' FROM intake", "CHECK"},
 		{"a booked file changed", "UPDATE intake SET sha256 = 'x' WHERE id = 1", "never changed"},
-		{"a booked file deleted", "DELETE FROM intake WHERE id = 1", "FOREIGN KEY"},
+		{"a booked file deleted", "DELETE FROM intake WHERE id = 1", "never deleted"},
 
 		{"a kit that begins pulled", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 1, 1, 'pulled', '2026-03-14T12:00:00.000000Z', x'')", "begins planned"},
 		{"more boards than are wanted", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 2, 1, 'planned', '2026-03-14T12:00:00.000000Z', x'')", "CHECK"},
 		{"fewer boards than none", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', -1, 1, 'planned', '2026-03-14T12:00:00.000000Z', x'')", "CHECK"},
 		{"a kit planned some day", "INSERT INTO kit (job, boards, wanted, state, created_at, plan) VALUES ('x', 1, 1, 'planned', 'some day', x'')", "CHECK"},
+		{"a kit deleted", "DELETE FROM kit WHERE id = 3", "never deleted"},
+		{"a kit given another's number", "UPDATE OR REPLACE kit SET id = 3 WHERE id = 2", "keeps its number"},
 		{"a kit in no state", "UPDATE kit SET state = 'lost' WHERE id = 3", "from this state to that"},
 		{"a pulled kit planned again", "UPDATE kit SET state = 'planned' WHERE id = 2", "from this state to that"},
 		{"a kit released while it holds pieces", "UPDATE kit SET state = 'released' WHERE id = 1", "holds nothing"},
@@ -135,8 +137,8 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 		{"a pick of nothing", "INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 2, 0, '[]')", "CHECK"},
 		{"references that are no list", "INSERT INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 2, 1, 'R1 R2')", "CHECK"},
 		{"nothing held", "UPDATE kit SET state = 'reserved' WHERE id = 3; INSERT INTO reservation VALUES (3, 1, 0)", "CHECK"},
-		{"a reserved pick deleted", "DELETE FROM pick WHERE kit_id = 1", "FOREIGN KEY"},
-		{"a pulled pick deleted", "DELETE FROM pick WHERE kit_id = 2", "FOREIGN KEY"},
+		{"a reserved pick deleted", "DELETE FROM pick WHERE kit_id = 1", "never deleted"},
+		{"a pulled pick deleted", "DELETE FROM pick WHERE kit_id = 2", "never deleted"},
 
 		{"pieces held for a planned kit", "INSERT INTO reservation VALUES (3, 1, 2)", "reserved kit"},
 		{"pieces held twice for a kit", "INSERT INTO reservation VALUES (1, 1, 4)", "never replaced"},
@@ -169,16 +171,54 @@ func TestDatabaseRefusesByItself(t *testing.T) {
 	}
 }
 
-// Another program may not set the pragmas that this one does.
-func TestMovementsAreNotReplacedWithoutRecursiveTriggers(t *testing.T) {
-	d := busyDrawer(t)
-	if _, err := d.db.Exec("PRAGMA recursive_triggers = off; PRAGMA foreign_keys = off"); err != nil {
-		t.Fatal(err)
+// Another program may not set the pragmas that this one does: SQLite's own shell
+// has foreign keys and recursive triggers off.
+func TestNothingIsReplacedOrDeletedByAProgramWithoutThePragmas(t *testing.T) {
+	for _, c := range []struct{ name, sql, says string }{
+		{"a movement", movement("INSERT OR REPLACE", "1", "receipt", 1, 5, 15, "NULL"), "never replaced"},
+		{"a movement changed", "UPDATE OR REPLACE movement SET id = 2 WHERE id = 1", "never changed"},
+		{"a movement deleted", "DELETE FROM movement WHERE id = 4", "never deleted"},
+		{"a lot deleted", "DELETE FROM lot WHERE id = 1", "never deleted"},
+		{"a part deleted", "DELETE FROM part WHERE id = 1", "never deleted"},
+		{"a booked file deleted", "DELETE FROM intake", "never deleted"},
+		{"a kit deleted", "DELETE FROM kit WHERE id = 2", "never deleted"},
+		{"a pick deleted", "DELETE FROM pick WHERE kit_id = 2", "never deleted"},
+		{"a lot by its number", "INSERT OR REPLACE INTO lot (id, part_id, bin, measured, note) VALUES (1, 1, 'Z', 0, '')", "never replaced"},
+		{"a lot by its place", "INSERT OR REPLACE INTO lot (part_id, bin, measured, note) SELECT part_id, bin, measured, '' FROM lot WHERE id = 1", "never replaced"},
+		{"a lot by another that is moved there", "INSERT INTO lot (part_id, bin, measured, note) VALUES (1, 'Z', 0, ''); UPDATE OR REPLACE lot SET bin = 'A1' WHERE bin = 'Z'", "never replaced"},
+		{"a lot before the first", "INSERT INTO lot (id, part_id, bin, measured, note) VALUES (-1, 1, 'Z', 0, '')", "CHECK"},
+		{"a part by its number", "INSERT OR REPLACE " + strings.TrimPrefix(strings.Replace(partWith("key", "99"), "SELECT 99", "SELECT 1", 1), "INSERT "), "never replaced"},
+		{"a part by its key", "INSERT OR REPLACE INTO part SELECT 99, key, kind, 7, NULL, NULL, part_number, 0, 0, '', NULL, '', 0, 0, 0, 0 FROM part WHERE id = 1", "never replaced"},
+		{"a booked file", "INSERT OR REPLACE INTO intake SELECT id, 'other.csv', sha256, booked_at, who FROM intake", "never replaced"},
+		{"a kit", "INSERT OR REPLACE INTO kit SELECT id, job, boards, wanted, 'planned', created_at, plan FROM kit WHERE id = 2", "never replaced"},
+		{"a pick of a planned kit", "INSERT OR REPLACE INTO pick (kit_id, lot_id, quantity, designators) VALUES (3, 1, 9, '[]')", "never replaced"},
+		{"a pick of a reserved kit", "INSERT OR REPLACE INTO pick (kit_id, lot_id, quantity, designators) VALUES (1, 1, 9, '[]')", "never replaced"},
+		{"a kit by another", "UPDATE OR REPLACE kit SET id = 2 WHERE id = 3", "keeps its number"},
+		{"a reservation", "INSERT OR REPLACE INTO reservation VALUES (1, 1, 1)", "never replaced"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			d := busyDrawer(t)
+			before := contents(t, d)
+			if _, err := d.db.Exec("PRAGMA recursive_triggers = off; PRAGMA foreign_keys = off"); err != nil {
+				t.Fatal(err)
+			}
+			tx, err := d.db.Begin()
+			if err != nil {
+				t.Fatal(err)
+			}
+			if _, err := tx.Exec(c.sql); err == nil {
+				t.Error("it was allowed")
+			} else if !strings.Contains(err.Error(), c.says) {
+				t.Errorf("refused with %q, want it to say %q", err, c.says)
+			}
+			if err := tx.Rollback(); err != nil {
+				t.Fatal(err)
+			}
+			if after := contents(t, d); after != before {
+				t.Errorf("the drawer has changed:\n%s\nwas:\n%s", after, before)
+			}
+		})
 	}
-	if _, err := d.db.Exec(movement("INSERT OR REPLACE", "1", "receipt", 1, 5, 15, "NULL")); err == nil {
-		t.Error("a movement was replaced")
-	}
-	wantSound(t, d)
 }
 
 // contents returns all that the drawer holds, for comparing.
