@@ -45,24 +45,31 @@ type stage struct {
 	faradBands bands
 }
 
-// class is one table for each position.
+// class is one table for each of the first two resistors that are assigned. The
+// tables of a third, and of the capacitor, are gone through inside, so that what
+// is computed for a pair of resistors serves them all.
 type class struct {
 	setup *setup
-	ohms  [timer.MaxResistors]int32
-	farad int32
-	parts int
-	cost  inventory.Micros // the least
+	ohms  [timer.MaxResistors]int32 // by position
+	parts int                       // the fewest
+	cost  inventory.Micros          // the least
 }
 
-// classes returns every choice of tables for the setup's positions.
+// classes returns every choice of tables for the setup's first two resistors.
 func (s *stage) classes(setup *setup) []class {
-	found := []class{{setup: setup, parts: setup.parts, cost: setup.cost}}
-	for i := range setup.circuit.Resistors {
+	ohms, farads := leastOf(s.resistors), leastOf(s.capacitors)
+	least := class{setup: setup, parts: setup.parts + farads.parts, cost: setup.cost + farads.cost}
+	for range len(setup.order) - 2 {
+		least.parts += ohms.parts
+		least.cost += ohms.cost
+	}
+	found := []class{least}
+	for _, position := range setup.order[:min(2, len(setup.order))] {
 		var next []class
 		for _, c := range found {
 			for t, table := range s.resistors {
 				with := c
-				with.ohms[i] = int32(t)
+				with.ohms[position] = int32(t)
 				with.parts += table.Parts
 				with.cost += table.CheapestIn(1)
 				next = append(next, with)
@@ -70,22 +77,30 @@ func (s *stage) classes(setup *setup) []class {
 		}
 		found = next
 	}
-	var all []class
-	for _, c := range found {
-		for t, table := range s.capacitors {
-			with := c
-			with.farad = int32(t)
-			with.parts += table.Parts
-			with.cost += table.CheapestIn(1)
-			all = append(all, with)
-		}
+	return found
+}
+
+// least is the fewest parts and the least cost that any network of some tables
+// has, each by itself.
+type least struct {
+	parts int
+	cost  inventory.Micros
+}
+
+func leastOf(tables []*network.Table) least {
+	l := least{tables[0].Parts, tables[0].CheapestIn(1)}
+	for _, table := range tables[1:] {
+		l.parts, l.cost = min(l.parts, table.Parts), min(l.cost, table.CheapestIn(1))
 	}
-	return all
+	return l
 }
 
 // run offers every fit that can join the collector's answer, and reports
 // whether it came to the end before ctx did.
 func (s *stage) run(ctx context.Context, into collector) bool {
+	if len(s.resistors) == 0 || len(s.capacitors) == 0 {
+		return true
+	}
 	// Fewest parts first, then the cheapest: what is found bounds the rest.
 	var classes []class
 	for i := range s.setups {

@@ -53,15 +53,14 @@ const halvings = 24
 
 // search walks the class and reports whether it came to the end.
 func (w *walk) search(c *class) bool {
-	w.at = candidate{setup: w.setup, parts: c.parts}
-	w.at.farad.table = c.farad
-	w.farads = w.capacitors[c.farad]
+	w.at = candidate{setup: w.setup}
 	w.low.Diode, w.high.Diode = w.diode, w.diode
-	for i := range w.circuit.Resistors {
-		table := w.resistors[c.ohms[i]]
-		w.tables[i] = table
-		w.at.ohms[i].table = c.ohms[i]
-		w.low.Ohms[i], w.high.Ohms[i] = table.Values[0], table.Values[table.Len()-1]
+	for depth, position := range w.order {
+		if depth < 2 {
+			w.use(position, c.ohms[position])
+		} else {
+			w.low.Ohms[position], w.high.Ohms[position] = w.ohms.low, w.ohms.high
+		}
 	}
 	position := w.order[0]
 	table := w.tables[position]
@@ -70,20 +69,37 @@ func (w *walk) search(c *class) bool {
 		if !w.tick() {
 			return false
 		}
+		w.at.parts = c.parts
 		cost := c.cost - table.CheapestIn(1) + table.Costs[row]
-		limit := w.into.limit(w.at.parts, cost)
-		if limit < 0 {
+		if w.into.limit(w.at.parts, cost) < 0 {
 			continue
 		}
 		w.fix(position, row)
 		if !kept[row].known {
 			kept[row] = w.boundsOverAll()
 		}
-		if from, to := w.faradRows(&kept[row], limit); from < to {
-			w.overFarads(&kept[row], cost, from, to)
+		w.second = w.second[:0]
+		any := leastOf(w.capacitors)
+		for t, farads := range w.capacitors {
+			w.farads = farads
+			w.at.farad.table = int32(t)
+			w.at.parts = c.parts - any.parts + farads.Parts
+			with := cost - any.cost + farads.CheapestIn(1)
+			if limit := w.into.limit(w.at.parts, with); limit >= 0 {
+				from, to := w.faradRows(&kept[row], limit)
+				w.overFarads(&kept[row], with, from, to)
+			}
 		}
 	}
 	return !w.stopped
+}
+
+// use puts a table into a resistor position, all of its rows.
+func (w *walk) use(position int, number int32) {
+	table := w.resistors[number]
+	w.tables[position] = table
+	w.at.ohms[position].table = number
+	w.low.Ohms[position], w.high.Ohms[position] = table.Values[0], table.Values[table.Len()-1]
 }
 
 // keptBounds returns the bounds for 1 F by row of the first resistor's table,
@@ -136,7 +152,6 @@ func (w *walk) faradRows(bounds *phaseBounds, limit float64) (from, to int) {
 // overFarads goes through the rows of the capacitors; the cost is the least with
 // the first resistor fixed.
 func (w *walk) overFarads(bounds *phaseBounds, cost inventory.Micros, from, to int) {
-	w.second = w.second[:0]
 	for row := from; row < to && w.tick(); row++ {
 		with := cost - w.farads.CheapestIn(1) + w.farads.Costs[row]
 		limit := w.into.limit(w.at.parts, with)
@@ -152,7 +167,7 @@ func (w *walk) overFarads(bounds *phaseBounds, cost inventory.Micros, from, to i
 		if w.hopeless(bounds, limit) {
 			continue
 		}
-		if (to-from)*halvings > w.tables[w.order[1]].Len() {
+		if len(w.second) > 0 || (to-from)*halvings > w.tables[w.order[1]].Len() {
 			w.overSecond(with, limit)
 		} else {
 			w.overRows(1, with)
@@ -167,6 +182,24 @@ func (w *walk) overRows(depth int, cost inventory.Micros) {
 	low, high := w.low.Ohms[position], w.high.Ohms[position]
 	w.descend(depth, cost-table.CheapestIn(1), 1, 0, table.Len())
 	w.low.Ohms[position], w.high.Ohms[position] = low, high
+}
+
+// overThird goes through the tables of the third resistor; the cost is the least
+// with all else fixed.
+func (w *walk) overThird(cost inventory.Micros) {
+	position := w.order[2]
+	any := leastOf(w.resistors)
+	parts := w.at.parts
+	for t, table := range w.resistors {
+		w.at.parts = parts - any.parts + table.Parts
+		with := cost - any.cost + table.CheapestIn(1)
+		if w.into.limit(w.at.parts, with) >= 0 {
+			w.use(position, int32(t))
+			w.overRows(2, with)
+		}
+	}
+	w.at.parts = parts
+	w.low.Ohms[position], w.high.Ohms[position] = w.ohms.low, w.ohms.high
 }
 
 // overSecond goes through the rows of the second resistor that the windows
@@ -192,7 +225,7 @@ func (w *walk) overSecond(cost inventory.Micros, limit float64) {
 		if len(w.order) == 2 {
 			w.leaf(with)
 		} else {
-			w.overRows(2, with)
+			w.overThird(with)
 		}
 	}
 	w.low.Ohms[position], w.high.Ohms[position] = low, high
@@ -253,7 +286,7 @@ func (w *walk) descend(depth int, others inventory.Micros, span, from, to int) {
 		return
 	}
 	if to-from == 1 {
-		w.overRows(depth+1, others+table.Costs[from])
+		w.overThird(others + table.Costs[from])
 		return
 	}
 	middle := network.Middle(from, to)
