@@ -14,19 +14,19 @@ CREATE TABLE part (
     id              INTEGER PRIMARY KEY CHECK (id > 0), -- here and below: in a trigger before INSERT an id to come is -1
     key             TEXT NOT NULL UNIQUE, -- equal exactly when two parts are the same part
     kind            TEXT NOT NULL CHECK (kind IN ('resistor', 'capacitor', 'diode', 'timer', 'inverter', 'potentiometer', 'other')),
-    value           REAL NOT NULL CHECK (value >= 0 AND value < 1e300), -- ohm or farad by kind; 0 for kinds without a value
+    value           REAL NOT NULL CHECK (value >= 0 AND value < 9e999), -- ohm or farad by kind; 0 for kinds without a value; 9e999 is infinity
     tolerance_minus REAL CHECK (tolerance_minus >= 0 AND tolerance_minus < 1),
-    tolerance_plus  REAL CHECK (tolerance_plus >= 0 AND tolerance_plus < 1e300),
+    tolerance_plus  REAL CHECK (tolerance_plus >= 0 AND tolerance_plus < 9e999),
     part_number     TEXT NOT NULL,
-    rating_v        REAL NOT NULL CHECK (rating_v >= 0), -- here and below 0 is unstated
-    rating_w        REAL NOT NULL CHECK (rating_w >= 0),
+    rating_v        REAL NOT NULL CHECK (rating_v >= 0 AND rating_v < 9e999), -- here and below 0 is unstated
+    rating_w        REAL NOT NULL CHECK (rating_w >= 0 AND rating_w < 9e999),
     dielectric      TEXT NOT NULL,
-    tempco_ppm      REAL,
+    tempco_ppm      REAL CHECK (abs(tempco_ppm) < 9e999),
     package         TEXT NOT NULL,
-    forward_v       REAL NOT NULL CHECK (forward_v >= 0),
-    saturation_a    REAL NOT NULL CHECK (saturation_a >= 0),
-    ideality        REAL NOT NULL CHECK (ideality >= 0),
-    series_ohm      REAL NOT NULL CHECK (series_ohm >= 0),
+    forward_v       REAL NOT NULL CHECK (forward_v >= 0 AND forward_v < 9e999),
+    saturation_a    REAL NOT NULL CHECK (saturation_a >= 0 AND saturation_a < 9e999),
+    ideality        REAL NOT NULL CHECK (ideality >= 0 AND ideality < 9e999),
+    series_ohm      REAL NOT NULL CHECK (series_ohm >= 0 AND series_ohm < 9e999),
     CHECK ((tolerance_minus IS NULL) = (tolerance_plus IS NULL))
 ) STRICT;
 
@@ -34,7 +34,7 @@ CREATE TABLE lot (
     id               INTEGER PRIMARY KEY AUTOINCREMENT CHECK (id > 0), -- a number is never given out twice
     part_id          INTEGER NOT NULL REFERENCES part (id),
     bin              TEXT NOT NULL,
-    measured         REAL NOT NULL CHECK (measured >= 0 AND measured < 1e300), -- in the part's unit; 0 where not measured
+    measured         REAL NOT NULL CHECK (measured >= 0 AND measured < 9e999), -- in the part's unit; 0 where not measured
     unit_cost_micros INTEGER CHECK (unit_cost_micros >= 0), -- millionths of the currency; NULL where unstated
     note             TEXT NOT NULL,
     on_hand          INTEGER NOT NULL DEFAULT 0 CHECK (on_hand BETWEEN 0 AND 1000000000000), -- so that no sum overflows

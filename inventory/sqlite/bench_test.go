@@ -9,18 +9,22 @@ import (
 	"tickdrawer/inventory"
 )
 
-// BenchmarkBook books 100,000 rows in one transaction: into new lots, and into
-// lots that are there.
+// BenchmarkBook books 100,000 rows in one transaction: into new lots, into lots
+// that are there, and into one lot with a note on every row.
 func BenchmarkBook(b *testing.B) {
 	const rows = 100_000
 	for _, bench := range []struct {
 		name string
 		lots int
-	}{{"a lot each", rows}, {"1000 lots", 1000}} {
+		note string
+	}{{"a lot each", rows, ""}, {"1000 lots", 1000, ""}, {"a lot with notes", 1, "order "}} {
 		b.Run(bench.name, func(b *testing.B) {
 			receipts := make([]inventory.Receipt, rows)
 			for i := range receipts {
 				receipts[i] = inventory.Receipt{Part: ohms(b, float64(1+i%bench.lots)), Bin: fmt.Sprint(i % 50), Quantity: 10}
+				if bench.note != "" {
+					receipts[i].Bin, receipts[i].Note = "A1", fmt.Sprint(bench.note, i)
+				}
 			}
 			for b.Loop() {
 				d := open(b, filepath.Join(b.TempDir(), "stock.drawer"))

@@ -5,9 +5,6 @@ import (
 	"database/sql"
 	"errors"
 	"fmt"
-	"math"
-	"slices"
-	"strings"
 
 	"tickdrawer/inventory"
 )
@@ -40,9 +37,9 @@ type Booking struct {
 
 // Book books the intake in one transaction. A receipt tops up the lot of the
 // same part, bin and measured value, or begins one; the unit cost becomes the
-// latest that is stated, and a note that says something new is added. In a
-// stocktake the rows of one lot add up and the lots that no row names stay as
-// they are.
+// // latest that is stated, and a note that says something new is added; the oldest
+// notes give way when they become too long. In a stocktake the rows of one lot
+// add up and the lots that no row names stay as they are.
 //
 // Errors: Invalid where a receipt makes no sense; Conflict where the same content
 // was booked before; Shortage where a stocktake finds fewer pieces than are
@@ -99,14 +96,6 @@ type stored struct {
 	onHand, reserved int64
 	cost             sql.NullInt64
 	note             string
-}
-
-// count is what a stocktake found in a lot.
-type count struct {
-	lot    stored
-	name   string // of the part
-	pieces int64
-	source source
 }
 
 func newIntakeWriter(ctx context.Context, tx *sql.Tx, d *Drawer) (*intakeWriter, error) {
@@ -221,27 +210,6 @@ func (w *intakeWriter) receipt(receipt inventory.Receipt, from source, stocktake
 	return nil
 }
 
-func tooMany(part string) error {
-	return inventory.Errorf(inventory.Invalid, "%s: more than %d pieces in one lot is out of reason: check the quantity", part, int64(MostPieces))
-}
-
-func checkReceipt(r inventory.Receipt, stocktake bool) error {
-	name := r.Part.Name()
-	switch {
-	case stocktake && r.Quantity < 0:
-		return inventory.Errorf(inventory.Invalid, "%s: a count is 0 or more, not %d", name, r.Quantity)
-	case !stocktake && r.Quantity < 1:
-		return inventory.Errorf(inventory.Invalid, "%s: a receipt is at least one piece, not %d", name, r.Quantity)
-	case !(r.Measured >= 0) || math.IsInf(r.Measured, 0):
-		return inventory.Errorf(inventory.Invalid, "%s: a measured value is a number above 0", name)
-	case r.Measured > 0 && r.Part.Kind.Unit() == "":
-		return inventory.Errorf(inventory.Invalid, "%s: a part of kind %s has no value to measure", name, r.Part.Kind)
-	case r.UnitCost != nil && *r.UnitCost < 0:
-		return inventory.Errorf(inventory.Invalid, "%s: a unit cost is never below 0", name)
-	}
-	return nil
-}
-
 // lot returns the receipt's lot where it is in the drawer, with its cost and note
 // brought up to date.
 func (w *intakeWriter) lot(receipt inventory.Receipt) (stored, bool, error) {
@@ -274,22 +242,14 @@ func (w *intakeWriter) lot(receipt inventory.Receipt) (stored, bool, error) {
 	return lot, true, err
 }
 
-// withNote returns the note with what is new about the other; "; " divides.
-func withNote(note, other string) string {
-	switch {
-	case note == "":
-		return other
-	case other == "" || strings.Contains("; "+note+"; ", "; "+other+"; "):
-		return note
-	}
-	return note + "; " + other
-}
-
 // begin begins the receipt's lot, with nothing in it yet.
 func (w *intakeWriter) begin(receipt inventory.Receipt) (stored, error) {
 	lot := stored{part: receipt.Part.Key()}
 	part, known := w.parts[lot.part]
 	if !known {
+		if _, err := inventory.NewPart(receipt.Part); err != nil {
+			return lot, err // else the database would refuse it, in its own words
+		}
 		result, err := w.addPart.ExecContext(w.row, partValues(receipt.Part)...)
 		if err != nil {
 			return lot, err
@@ -326,47 +286,4 @@ func (w *intakeWriter) move(kind inventory.MovementKind, lot stored, delta int64
 	w.booking.Movements++
 	w.booking.QuantityBooked += delta
 	return nil
-}
-
-// counts books what a stocktake found beside what the drawer says.
-func (w *intakeWriter) counts() error {
-	var held []string
-	for _, c := range w.order {
-		if c.pieces < c.lot.reserved {
-			kits, err := holders(w.ctx, w.tx, c.lot.id)
-			if err != nil {
-				return err
-			}
-			held = append(held, fmt.Sprintf("lot %d (%s): %d counted, %d reserved by %s", c.lot.id, c.name, c.pieces, c.lot.reserved, kits))
-			continue
-		}
-		if c.pieces != c.lot.onHand {
-			if err := w.move(inventory.MoveCount, c.lot, c.pieces-c.lot.onHand, c.source); err != nil {
-				return err
-			}
-		}
-	}
-	if held != nil {
-		slices.SortFunc(held, inventory.NaturalCompare)
-		return inventory.Errorf(inventory.Shortage, "fewer pieces were counted than are promised; nothing was booked; release the kit first (\"tickdrawer release KIT\"):\n  %s", strings.Join(held, "\n  "))
-	}
-	return nil
-}
-
-// holders returns the kits that hold pieces of the lot, for a sentence.
-func holders(ctx context.Context, q querier, lot inventory.LotID) (string, error) {
-	rows, err := q.QueryContext(ctx, "SELECT kit_id FROM reservation WHERE lot_id = ? ORDER BY kit_id", lot)
-	if err != nil {
-		return "", err
-	}
-	defer rows.Close()
-	var kits []string
-	for rows.Next() {
-		var kit inventory.KitID
-		if err := rows.Scan(&kit); err != nil {
-			return "", err
-		}
-		kits = append(kits, fmt.Sprintf("kit %d", kit))
-	}
-	return strings.Join(kits, " and "), rows.Err()
 }

@@ -7,6 +7,9 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+	"unicode/utf8"
+
+	"pgregory.net/rapid"
 
 	"tickdrawer/inventory"
 	"tickdrawer/inventory/marking"
@@ -54,6 +57,7 @@ func TestDrawerReturnsThePartAsItWasBooked(t *testing.T) {
 		{Kind: inventory.Resistor, Value: 4.7e3, Tolerance: &marking.Tolerance{Minus: 0, Plus: 0}, RatingW: 0.25, TempcoPPM: &zero, Package: "axial"},
 		{Kind: inventory.Capacitor, Value: 4.7e-12, Tolerance: &marking.Tolerance{Minus: 0.2, Plus: 0.8}, RatingV: 50, Dielectric: "X7R"},
 		{Kind: inventory.Potentiometer, Value: math.SmallestNonzeroFloat64},
+		{Kind: inventory.Resistor, Value: math.MaxFloat64, RatingV: math.MaxFloat64, RatingW: math.MaxFloat64, Tolerance: &marking.Tolerance{Minus: 0.999, Plus: math.MaxFloat64}},
 		{Kind: inventory.Diode, PartNumber: "1N4148", ForwardV: 0.7, SaturationA: 2.52e-9, Ideality: 1.752, SeriesOhm: 0.568},
 		{Kind: inventory.Timer, PartNumber: "NE555"},
 		{Kind: inventory.Inverter, PartNumber: "74HC14"},
@@ -82,6 +86,38 @@ func TestDrawerReturnsThePartAsItWasBooked(t *testing.T) {
 		t.Errorf("%d lots, want %d", len(lots), len(parts))
 	}
 	wantSound(t, d)
+}
+
+// A lot that is topped up for years keeps the latest notes, of bounded length.
+func TestNotesGiveWayOldestFirst(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		word := rapid.StringMatching(`[a-zé]{1,9}(; [a-z]{1,9})?`)
+		note := ""
+		for range rapid.IntRange(1, 40).Draw(t, "bookings") {
+			other := strings.Repeat(word.Draw(t, "note"), rapid.SampledFrom([]int{1, 1, 30, 90, 120}).Draw(t, "times"))
+			before := note
+			note = withNote(note, other)
+			if note == before {
+				if !strings.Contains("; "+note+"; ", "; "+other+"; ") {
+					t.Fatalf("%q was not added", other)
+				}
+				continue
+			}
+			if len(note) > mostNote || !utf8.ValidString(note) {
+				t.Fatalf("the note has %d bytes: %q", len(note), note)
+			}
+			if !strings.HasSuffix("; "+note, "; "+other) {
+				t.Fatalf("%q does not end the note", other)
+			}
+			rest, cut := strings.CutPrefix(note, "…; ")
+			if !cut && before != "" && !strings.HasPrefix(note, before) {
+				t.Fatalf("%q has become %q, and nothing says that anything is left out", before, note)
+			}
+			if rest = strings.TrimSuffix(strings.TrimSuffix(rest, other), "; "); !strings.HasSuffix(before, rest) && rest != before {
+				t.Fatalf("%q has become %q: not the oldest gave way", before, note)
+			}
+		}
+	})
 }
 
 func TestSameContentIsBookedOnce(t *testing.T) {
@@ -184,6 +220,11 @@ func TestBookRefusesNonsenseAndKeepsNothing(t *testing.T) {
 		{"measured as no number", inventory.Receipt{Part: ohms(t, 1), Quantity: 1, Measured: math.NaN()}, false, "measured value"},
 		{"measured without end", inventory.Receipt{Part: ohms(t, 1), Quantity: 1, Measured: math.Inf(1)}, false, "measured value"},
 		{"a timer measured", inventory.Receipt{Part: timer, Quantity: 1, Measured: 5}, false, "no value to measure"},
+		{"a part of no kind", inventory.Receipt{Part: inventory.Part{Kind: "coil"}, Quantity: 1}, false, "no kind of component"},
+		{"a part of less than no value", inventory.Receipt{Part: inventory.Part{Kind: inventory.Resistor, Value: -1}, Quantity: 1}, false, "never negative"},
+		{"a part of no number", inventory.Receipt{Part: inventory.Part{Kind: inventory.Resistor, Value: math.NaN()}, Quantity: 1}, false, "not a finite number"},
+		{"a bin that does not print", inventory.Receipt{Part: ohms(t, 1), Quantity: 1, Bin: "A\x001"}, false, `bin "A\x001" holds characters that do not print`},
+		{"a note that is no text", inventory.Receipt{Part: ohms(t, 1), Quantity: 1, Note: "\xff"}, false, `note "\xff" holds characters that do not print`},
 		{"a cost below zero", inventory.Receipt{Part: ohms(t, 1), Quantity: 1, UnitCost: micros(-1)}, false, "unit cost"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -191,7 +232,7 @@ func TestBookRefusesNonsenseAndKeepsNothing(t *testing.T) {
 			before := contents(t, d)
 			good := inventory.Receipt{Part: ohms(t, 3), Quantity: 1}
 			_, err := d.Book(context.Background(), Intake{Stocktake: c.stocktake, Files: []IntakeFile{file("x.csv", good, c.receipt)}})
-			wantReason(t, err, inventory.Invalid, c.says, c.receipt.Part.Name())
+			wantReason(t, err, inventory.Invalid, c.says)
 			if after := contents(t, d); after != before {
 				t.Errorf("refused, and yet changed:\n%s", after)
 			}

@@ -34,6 +34,11 @@ var checks = []struct {
 		`SELECT r.kit_id, r.lot_id, k.state FROM reservation r JOIN kit k ON k.id = r.kit_id WHERE k.state <> 'reserved' ORDER BY 1, 2`,
 		"kit %v holds pieces of lot %v though it is %v", 3,
 	}, {
+		`SELECT k.id, p.lot_id, p.quantity - p.pulled AS due, COALESCE(r.quantity, 0) AS held
+		FROM kit k JOIN pick p ON p.kit_id = k.id LEFT JOIN reservation r ON r.kit_id = p.kit_id AND r.lot_id = p.lot_id
+		WHERE k.state = 'reserved' AND held <> due ORDER BY 1, 2`,
+		"kit %v is reserved, but of lot %v it is to hold %v pieces and holds %v", 4,
+	}, {
 		`SELECT p.kit_id, p.lot_id, p.pulled, COALESCE(-SUM(m.delta), 0) AS booked
 		FROM pick p LEFT JOIN movement m ON m.kit_id = p.kit_id AND m.lot_id = p.lot_id AND m.kind = 'pull'
 		GROUP BY p.kit_id, p.lot_id HAVING p.pulled <> booked ORDER BY 1, 2`,

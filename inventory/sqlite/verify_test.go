@@ -31,6 +31,7 @@ func TestVerifyFindsWhatWasTamperedWith(t *testing.T) {
 		{"pieces on hand", "UPDATE lot SET on_hand = 12 WHERE id = 1", "lot 1: 12 pieces on hand, the movements add up to 10"},
 		{"pieces reserved", "UPDATE lot SET reserved = 5 WHERE id = 1", "lot 1: 5 pieces reserved, the open reservations add up to 4"},
 		{"a reservation lost", "DELETE FROM reservation", "lot 1: 4 pieces reserved, the open reservations add up to 0"},
+		{"a reservation freed and its kit left reserved", "UPDATE lot SET reserved = 0 WHERE id = 1; DELETE FROM reservation", "kit 1 is reserved, but of lot 1 it is to hold 4 pieces and holds 0"},
 		{"a kit that holds and is not reserved", "UPDATE kit SET state = 'released' WHERE id = 1", "kit 1 holds pieces of lot 1 though it is released"},
 		{"a kit that is said to be pulled", "UPDATE kit SET state = 'pulled' WHERE id = 3", "kit 3 is pulled, but of lot 1 it wants 2 pieces and took 0"},
 		{"a pick that is said to be pulled", "UPDATE pick SET pulled = 1 WHERE kit_id = 3", "kit 3, lot 1: 1 pieces pulled, the movements add up to 0"},
