@@ -240,7 +240,7 @@ func (p *program) printImport(document importDocument, booking sqlite.Booking, f
 	p.printf("%s %s into %s", what, pieces, p.drawerPath())
 	p.printf("new lots: %d", booking.LotsCreated)
 	if booking.Movements > 0 && !flags.dryRun {
-		p.printf("movements: %d to %d", booking.First, booking.Last)
+		p.printf("%s", movementNumbers(booking.First, booking.Last))
 	}
 	for _, file := range document.Files {
 		if file.Rejects != "" {

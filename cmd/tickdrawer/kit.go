@@ -289,9 +289,9 @@ func (p *program) printPlan(plan optimize.Plan, document kitDocument) {
 	case !plan.Search.Proven:
 		p.printf("not proven: a plan that was missed could be better")
 	case plan.Built < plan.Job.Boards:
-		p.printf("proven: no choice of the same fits for every board builds more")
+		p.printf("proven: with the same parts on every board no more can be built")
 	default:
-		p.printf("proven: no other choice of the same fits for every board takes fewer parts, costs less or comes closer")
+		p.printf("proven: with the same parts on every board, no other plan takes fewer parts, costs less or comes closer")
 	}
 	if document.Output != "" {
 		p.printf("picks: %s", document.Output)

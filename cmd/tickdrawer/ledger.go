@@ -117,3 +117,11 @@ func (p *program) printMovements(movements []inventory.Movement) {
 	}
 	p.printTable(columns, rows)
 }
+
+// movementNumbers names the movements from the first to the last.
+func movementNumbers(first, last inventory.MovementID) string {
+	if first == last {
+		return fmt.Sprintf("movement %d", first)
+	}
+	return fmt.Sprintf("movements %d to %d", first, last)
+}

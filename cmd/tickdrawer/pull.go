@@ -59,6 +59,6 @@ func (p *program) moveKit(ctx context.Context, argument, done string, move func(
 		pieces += max(m.Delta, -m.Delta)
 	}
 	p.printf("")
-	p.printf("kit %d: %s %s, movements %d to %d", id, counted(pieces, "piece"), done, movements[0].ID, movements[len(movements)-1].ID)
+	p.printf("kit %d: %s %s, %s", id, counted(pieces, "piece"), done, movementNumbers(movements[0].ID, movements[len(movements)-1].ID))
 	return nil
 }
