@@ -140,6 +140,43 @@ func TestKilledAtAnyMoment(t *testing.T) {
 	t.Logf("%d kills, %d works acknowledged", kills, len(done))
 }
 
+// A program killed while it makes a drawer leaves one that the next makes whole.
+func TestKilledWhileTheDrawerIsMade(t *testing.T) {
+	folder := t.TempDir()
+	unmade := 0
+	for kill := range 12 {
+		path := filepath.Join(folder, "new", fmt.Sprint(kill))
+		child := childOf("make", path)
+		if err := child.Start(); err != nil {
+			t.Fatal(err)
+		}
+		began := time.Now()
+		for time.Since(began) < time.Second { // until there is a file: what comes before is of no interest
+			if _, err := os.Stat(path); err == nil {
+				break
+			}
+			time.Sleep(100 * time.Microsecond)
+		}
+		time.Sleep(time.Duration(rand.IntN(12_000)) * time.Microsecond)
+		if err := child.Process.Kill(); err != nil {
+			t.Fatal(err)
+		}
+		child.Wait()
+		switch err := tryOpen(path, false); inventory.ReasonOf(err) {
+		case inventory.NotFound: // nothing is in it yet
+			unmade++
+		default:
+			if err != nil {
+				t.Error(err)
+			}
+		}
+		d := open(t, path)
+		stock(t, d, 3)
+		wantSound(t, d)
+	}
+	t.Logf("%d of 12 were killed before the drawer was whole", unmade)
+}
+
 func checkAfterKill(t *testing.T, path string, done map[string]bool) {
 	t.Helper()
 	ctx := context.Background()
