@@ -2,13 +2,16 @@ package inventory
 
 import "time"
 
-// KitID is the number of a planned kit; the drawer gives them out from 1.
+// KitID is the number of a kit; the drawer gives them out from 1.
 type KitID int64
 
 // KitState is how far a kit has come.
 type KitState string
 
-// The states of a kit. Picks are held only while Reserved.
+// The states of a kit: planned → reserved → pulled, where reserved may be left for
+// released and come back, and a planned or released kit may be pulled at once.
+// Pieces are held only while it is reserved; a pulled kit stays pulled, also when
+// all of it is put back.
 const (
 	KitPlanned  KitState = "planned"  // computed and kept; holds nothing
 	KitReserved KitState = "reserved" // its picks are promised to it
@@ -29,7 +32,7 @@ type Kit struct {
 	ID        KitID
 	Job       string
 	Boards    int64 // that the picks build
-	Wanted    int64
+	Wanted    int64 // boards that were asked for, ≥ Boards
 	State     KitState
 	CreatedAt time.Time // UTC
 	Picks     []Pick    // sorted by lot

@@ -41,9 +41,9 @@ func (l Lot) Value() float64 {
 // there already.
 type Receipt struct {
 	Part     Part
-	Bin      string
-	Measured float64
-	UnitCost *Micros
+	Bin      string  // "" where it is not stated
+	Measured float64 // in the part's unit; 0 where not measured
+	UnitCost *Micros // of one piece; nil where unstated
 	Note     string
 	Quantity int64 // ≥ 1 for a receipt; ≥ 0 as a stocktake's count
 }
@@ -66,7 +66,7 @@ type MovementID int64
 type Movement struct {
 	ID      MovementID
 	At      time.Time // UTC
-	Who     string
+	Who     string // who booked it
 	Kind    MovementKind
 	Lot     LotID
 	Part    Part   // the lot's part, for reading the line
@@ -74,5 +74,5 @@ type Movement struct {
 	Delta   int64  // pieces, positive in, negative out, never 0
 	Balance int64  // pieces on hand in the lot afterwards
 	Kit     KitID  // 0 where no kit is concerned
-	Source  string // the file that an import came from
+	Source  string // the name of the file that was booked; "" where none
 }
