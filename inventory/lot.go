@@ -66,7 +66,7 @@ type MovementID int64
 type Movement struct {
 	ID      MovementID
 	At      time.Time // UTC
-	Who     string // who booked it
+	Who     string    // who booked it
 	Kind    MovementKind
 	Lot     LotID
 	Part    Part   // the lot's part, for reading the line

@@ -57,6 +57,7 @@ func TestKitThatMakesNoSenseIsNotKept(t *testing.T) {
 		{"fewer boards than none", inventory.Kit{Boards: -1}, inventory.Invalid, "-1 boards"},
 		{"pulled before it is kept", inventory.Kit{State: inventory.KitPulled}, inventory.Invalid, "not pulled"},
 		{"reserved with no picks", inventory.Kit{State: inventory.KitReserved}, inventory.Conflict, "no picks"},
+		{"reserved with more than is there, without a name", inventory.Kit{State: inventory.KitReserved, Picks: []inventory.Pick{{Lot: 1, Quantity: 11}}}, inventory.Shortage, "the kit cannot be reserved"},
 		{"reserved with more than is there", inventory.Kit{Job: "beacon", State: inventory.KitReserved, Picks: []inventory.Pick{{Lot: 1, Quantity: 11}}}, inventory.Shortage, "1 missing"},
 	} {
 		t.Run(c.name, func(t *testing.T) {

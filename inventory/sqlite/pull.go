@@ -62,7 +62,11 @@ func enough(ctx context.Context, q querier, kit inventory.Kit, done string) (map
 		missing = append(missing, sentence)
 	}
 	if missing != nil {
-		return nil, inventory.Errorf(inventory.Shortage, "%s cannot be %s: pieces that it was planned with are gone; nothing was changed; plan it again:\n  %s", kit.Job, done, strings.Join(missing, "\n  "))
+		name := kit.Job
+		if name == "" {
+			name = "the kit"
+		}
+		return nil, inventory.Errorf(inventory.Shortage, "%s cannot be %s: pieces that it was planned with are gone; nothing was changed; plan it again:\n  %s", name, done, strings.Join(missing, "\n  "))
 	}
 	return lots, nil
 }
