@@ -116,7 +116,7 @@ func (p *program) printStock(lots []inventory.Lot) error {
 		return p.printJSON(document)
 	}
 	if len(lots) == 0 {
-		p.printf("no lot to list")
+		p.printf("no lot with pieces to list; --all lists empty ones too")
 		return nil
 	}
 	columns := []column{
